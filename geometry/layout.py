@@ -177,6 +177,10 @@ class RelayRod:
     idler_end: Point
     box_side: SideName = "left"
 
+    def __post_init__(self) -> None:
+        for field_name in _RELAY_FIELDS.values():
+            object.__setattr__(self, field_name, Point(*map(float, getattr(self, field_name))))
+
     def side_of(self, name: str) -> SideName:
         """On which side of the car a relay point is measured."""
         pitman = name in (PITMAN_PIVOT, PITMAN_END)
@@ -251,7 +255,7 @@ class Layout:
 
     ``right`` is None while the right side mirrors the left. ``assumed`` lists, in plain
     words, what was not measured. ``tolerances`` overrides named tolerances (see
-    tolerances.py). ``rear`` ... the rear axle is only a wheelbase here.
+    tolerances.py). The rear axle is only a wheelbase here.
     """
 
     left: Side
