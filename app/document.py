@@ -1,0 +1,260 @@
+"""The open job: its history, its file, how it stands on the floor, and its solution.
+
+Every act of a person comes in here as a new immutable job or as a change of stance on the
+floor (travel, rack, roll, selection). Acts only mark the document; one timer solves once a
+frame and tells the views, which all draw from ``solution``.
+"""
+
+from __future__ import annotations
+
+from dataclasses import replace
+from pathlib import Path
+
+from PySide6.QtCore import QObject, QTimer, Signal
+
+from app.history import History
+from geometry.findings import Finding, findings
+from geometry.layout import Job, Layout, Point, SideName, UnitName
+from geometry.solution import Solution, solve
+
+DEFAULT_SPAN = 75.0
+"""Half the travel the curves and ranges go over, mm: about the three inches of a gauge."""
+
+
+class Document(QObject):
+    """What the window edits. Views connect to its signals and never to each other."""
+
+    solved = Signal()
+    """A new solution stands (at most once a frame)."""
+    edited = Signal()
+    """The job, its undo state, its file or its saved mark changed."""
+    selected = Signal()
+    """Another nail is chosen."""
+    opened = Signal()
+    """Another job took this one's place."""
+
+    def __init__(self, job: Job, path: Path | None = None, parent: QObject | None = None) -> None:
+        super().__init__(parent)
+        self._history = History(job)
+        self.path = path
+        self._travel: dict[SideName, float] = {"left": 0.0, "right": 0.0}
+        self._rack = 0.0
+        self._span = DEFAULT_SPAN
+        self._selection: tuple[SideName, str] | None = None
+        self._solution: Solution | None = None
+        self._found: Solution | None = None
+        self._findings: tuple[Finding, ...] | None = None
+        self._timer = QTimer(self)
+        self._timer.setSingleShot(True)
+        self._timer.setInterval(0)
+        self._timer.timeout.connect(self._solve)
+
+    # --- what stands ---------------------------------------------------------------
+
+    @property
+    def job(self) -> Job:
+        return self._history.job
+
+    @property
+    def layout(self) -> Layout:
+        """The car as planned, which is what a person edits."""
+        return self.job.planned
+
+    @property
+    def units(self) -> UnitName:
+        return self.layout.units
+
+    @property
+    def solution(self) -> Solution:
+        """The solution of what stands now; solves at once if an act is waiting."""
+        if self._solution is None:
+            self._solution = self._solved(self.layout)
+        return self._solution
+
+    @property
+    def found_solution(self) -> Solution | None:
+        """The car as found in the same pose, or None if the job holds none."""
+        if self._found is None and self.job.found is not None:
+            self._found = self._solved(self.job.found)
+        return self._found
+
+    @property
+    def findings(self) -> tuple[Finding, ...]:
+        """What is wrong with the car as planned."""
+        if self._findings is None:
+            self._findings = findings(self.solution)
+        return self._findings
+
+    def _solved(self, layout: Layout) -> Solution:
+        return solve(layout, dict(self._travel), self._rack, self._span)
+
+    # --- stance on the floor (no undo steps) ------------------------------------------
+
+    @property
+    def travel(self) -> dict[SideName, float]:
+        return dict(self._travel)
+
+    def set_travel(self, left: float | None = None, right: float | None = None) -> None:
+        """Move the wheels, mm, bump positive; None leaves a side as it is."""
+        changed = dict(self._travel)
+        if left is not None:
+            changed["left"] = left
+        if right is not None:
+            changed["right"] = right
+        if changed != self._travel:
+            self._travel = changed
+            self._mark()
+
+    @property
+    def rack(self) -> float:
+        return self._rack
+
+    def set_rack(self, rack: float) -> None:
+        """Move the rack (or pitman end), mm to the car's left."""
+        if rack != self._rack:
+            self._rack = rack
+            self._mark()
+
+    @property
+    def span(self) -> float:
+        return self._span
+
+    def set_span(self, span: float) -> None:
+        """Set half the travel that curves and ranges go over, mm."""
+        if span != self._span:
+            self._span = span
+            self._mark()
+
+    @property
+    def selection(self) -> tuple[SideName, str] | None:
+        return self._selection
+
+    def select(self, side: SideName | None, name: str = "") -> None:
+        chosen = None if side is None else (side, name)
+        if chosen != self._selection:
+            self._selection = chosen
+            self.selected.emit()
+
+    # --- edits (undo steps) -------------------------------------------------------------
+
+    def apply(self, text: str, job: Job) -> None:
+        """Make a changed job the next undo step, named ``text``; nothing if it is the same."""
+        if self._history.push(text, job):
+            self._changed()
+        else:
+            self._mark()
+
+    def apply_layout(self, text: str, layout: Layout) -> None:
+        """The same for a change of the car as planned."""
+        self.apply(text, self._history.settled.with_planned(layout))
+
+    def preview_layout(self, layout: Layout) -> None:
+        """Show a car while a drag is under way, without an undo step."""
+        self._history.preview(self._history.settled.with_planned(layout))
+        self._mark()
+
+    def cancel_preview(self) -> None:
+        """Put back what stood before the drag."""
+        if self._history.previewing:
+            self._history.drop()
+            self._mark()
+
+    def settled_layout(self) -> Layout:
+        """The car as planned before any drag under way."""
+        return self._history.settled.planned
+
+    def move_point(self, side: SideName, name: str, to: Point) -> None:
+        """Move one nail as one undo step."""
+        layout = self.settled_layout()
+        if name in layout.locked:
+            self.cancel_preview()
+            return
+        self.apply_layout(f"move {name}", layout.with_point(side, name, to))
+
+    def preview_point(self, side: SideName, name: str, to: Point) -> None:
+        """Move one nail while it is dragged."""
+        layout = self.settled_layout()
+        if name not in layout.locked:
+            self.preview_layout(layout.with_point(side, name, to))
+
+    def set_units(self, units: UnitName) -> None:
+        """Show inches or millimeters (an undo step, as the file keeps it)."""
+        job = self._history.settled
+        found = None if job.found is None else replace(job.found, units=units)
+        planned = replace(job.planned, units=units)
+        words = "inches" if units == "in" else "millimeters"
+        self.apply(f"show {words}", replace(job, planned=planned, found=found))
+
+    @property
+    def undo_text(self) -> str | None:
+        return self._history.undo_text
+
+    @property
+    def redo_text(self) -> str | None:
+        return self._history.redo_text
+
+    def undo(self) -> None:
+        if self._history.undo():
+            self._changed()
+
+    def redo(self) -> None:
+        if self._history.redo():
+            self._changed()
+
+    # --- file ------------------------------------------------------------------------
+
+    @property
+    def is_changed(self) -> bool:
+        """True if closing now would lose something."""
+        return not self._history.is_clean
+
+    def mark_saved(self, path: Path) -> None:
+        self.path = path
+        self._history.mark_clean()
+        self.edited.emit()
+
+    def mark_changed(self) -> None:
+        self._history.mark_changed()
+        self.edited.emit()
+
+    def open_job(self, job: Job, path: Path | None) -> None:
+        """Put another job in this one's place, with a fresh history, at ride height."""
+        self._history = History(job)
+        self.path = path
+        self._travel = {"left": 0.0, "right": 0.0}
+        self._rack = 0.0
+        self._selection = None
+        self._forget()
+        self.opened.emit()
+        self.edited.emit()
+        self.selected.emit()
+        self._mark()
+
+    # --- the frame --------------------------------------------------------------------
+
+    def _changed(self) -> None:
+        chosen = self._selection
+        if chosen is not None and chosen not in set(self.layout.nails()):
+            self._selection = None
+            self.selected.emit()
+        self._mark()
+        self.edited.emit()
+
+    def _forget(self) -> None:
+        self._solution = None
+        self._found = None
+        self._findings = None
+
+    def _mark(self) -> None:
+        self._forget()
+        if not self._timer.isActive():
+            self._timer.start()
+
+    def _solve(self) -> None:
+        self.solved.emit()
+
+    def settle(self) -> None:
+        """Solve and tell the views now, if an act is waiting (for tests and pictures)."""
+        if self._timer.isActive():
+            self._timer.stop()
+            self._solve()
