@@ -211,9 +211,11 @@ def rack_limits(layout: Layout, travel: float | dict[SideName, float] = 0.0) -> 
 
     def meets(rack: Array) -> np.ndarray:
         shifts = inner_shifts(layout, rack)
-        return np.asarray(np.logical_and.reduce(
-            [corners[side].poses(held[side], shifts[side]).assembles for side in SIDES]
-        ))
+        return np.asarray(
+            np.logical_and.reduce(
+                [corners[side].poses(held[side], shifts[side]).assembles for side in SIDES]
+            )
+        )
 
     steps = np.arange(0.0, RACK_SEARCH + _SEARCH_STEP, _SEARCH_STEP)
     fine = meets(np.concatenate([-steps, steps])).reshape(2, -1)
