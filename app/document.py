@@ -41,6 +41,7 @@ class Document(QObject):
         self._rack = 0.0
         self._span = DEFAULT_SPAN
         self._selection: tuple[SideName, str] | None = None
+        self._showing_found = False
         self._solution: Solution | None = None
         self._found: Solution | None = None
         self._findings: tuple[Finding, ...] | None = None
@@ -70,6 +71,29 @@ class Document(QObject):
         if self._solution is None:
             self._solution = self._solved(self.layout)
         return self._solution
+
+    @property
+    def showing_found(self) -> bool:
+        """True while the floor shows the car as found, to be looked at and not edited."""
+        return self._showing_found and self.job.found is not None
+
+    def show_found(self, found: bool) -> None:
+        """Show the car as found, or the one as planned again."""
+        if found != self._showing_found:
+            self._showing_found = found
+            self._mark()
+            self.edited.emit()
+
+    @property
+    def shown_solution(self) -> Solution:
+        """The solution the floor draws strongly: as planned, or as found while that is shown."""
+        found = self.found_solution
+        return found if self.showing_found and found is not None else self.solution
+
+    @property
+    def outline_solution(self) -> Solution | None:
+        """The solution the floor draws as a pale outline: the other car, if there is one."""
+        return self.solution if self.showing_found else self.found_solution
 
     @property
     def found_solution(self) -> Solution | None:
@@ -140,6 +164,7 @@ class Document(QObject):
     def apply(self, text: str, job: Job) -> None:
         """Make a changed job the next undo step, named ``text``; nothing if it is the same."""
         if self._history.push(text, job):
+            self._showing_found = False
             self._changed()
         else:
             self._mark()
@@ -176,6 +201,32 @@ class Document(QObject):
         layout = self.settled_layout()
         if name not in layout.locked:
             self.preview_layout(layout.with_point(side, name, to))
+
+    def set_locked(self, name: str, locked: bool) -> None:
+        """Lock a nail, on both sides, or free it."""
+        layout = self.settled_layout()
+        names = layout.locked | {name} if locked else layout.locked - {name}
+        text = f"lock {name}" if locked else f"unlock {name}"
+        self.apply_layout(text, replace(layout, locked=frozenset(names)))
+
+    def set_linked(self, linked: bool, keep: SideName = "left") -> None:
+        """Let the right side mirror the left (as ``keep`` has it), or go its own way."""
+        layout = self.settled_layout()
+        if linked:
+            self.apply_layout("link sides", layout.linked_to(keep))
+        else:
+            self.apply_layout("unlink sides", layout.unlinked())
+
+    def keep_as_found(self) -> None:
+        """Take the car as it is now as the one that was found."""
+        job = self._history.settled
+        self.apply("keep as found", replace(job, found=job.planned))
+
+    def plan_from_found(self) -> None:
+        """Start the plan again from the car as found."""
+        job = self._history.settled
+        if job.found is not None:
+            self.apply("plan from as found", replace(job, planned=job.found))
 
     def set_units(self, units: UnitName) -> None:
         """Show inches or millimeters (an undo step, as the file keeps it)."""
@@ -224,6 +275,7 @@ class Document(QObject):
         self._travel = {"left": 0.0, "right": 0.0}
         self._rack = 0.0
         self._selection = None
+        self._showing_found = False
         self._forget()
         self.opened.emit()
         self.edited.emit()

@@ -1,0 +1,163 @@
+"""Opening, saving and exporting: every file dialog and every message about a file."""
+
+from __future__ import annotations
+
+import re
+from pathlib import Path
+
+from PySide6.QtCore import Qt
+from PySide6.QtWidgets import (
+    QDialog,
+    QDialogButtonBox,
+    QFileDialog,
+    QLabel,
+    QMessageBox,
+    QPlainTextEdit,
+    QVBoxLayout,
+    QWidget,
+)
+
+from app import settings
+from app.document import Document
+from geometry.layout import Job
+from geometry.layout_file import write_job
+from geometry.open_file import open_job
+
+SUFFIX = ".bobline"
+LAYOUTS = f"Layouts (*{SUFFIX})"
+ALL = f"Layouts and measure sheets (*{SUFFIX} *.json *.csv *.txt);;All files (*)"
+
+
+def show_faults(parent: QWidget, heading: str, faults: list[str]) -> None:
+    """All that is wrong with a file, in a list that can be read and copied."""
+    box = QDialog(parent)
+    box.setWindowTitle("Bobline")
+    column = QVBoxLayout(box)
+    title = QLabel(heading)
+    title.setWordWrap(True)
+    column.addWidget(title)
+    text = QPlainTextEdit("\n".join(faults))
+    text.setReadOnly(True)
+    text.setAccessibleName("What is wrong with the file")
+    column.addWidget(text)
+    buttons = QDialogButtonBox(QDialogButtonBox.StandardButton.Close)
+    buttons.rejected.connect(box.reject)
+    column.addWidget(buttons)
+    box.resize(620, 300)
+    box.exec()
+
+
+def read(path: Path, parent: QWidget) -> Job | None:
+    """A job from a layout or a measure sheet; None after telling the person what is wrong."""
+    try:
+        return open_job(path)
+    except OSError as error:
+        faults = [f"{error.strerror or error}."]
+    except ValueError as error:
+        faults = list(getattr(error, "faults", None) or [str(error)])
+    show_faults(parent, f"“{path.name}” can't be opened. Nothing was changed.", faults)
+    return None
+
+
+def ask_open(parent: QWidget) -> Path | None:
+    """Which file to open."""
+    name, _ = QFileDialog.getOpenFileName(parent, "Open", _folder(), ALL)
+    return Path(name) if name else None
+
+
+def _folder() -> str:
+    recent = settings.recent_files()
+    return str(recent[0].parent) if recent else str(Path.home())
+
+
+def proposed_name(document: Document) -> str:
+    """A file name from the car's title, safe on every system."""
+    title = re.sub(r'[<>:"/\\|?*\x00-\x1f]+', " ", document.layout.title).strip(" .")
+    return (title or "Untitled") + SUFFIX
+
+
+def save(document: Document, parent: QWidget) -> bool:
+    """Save to the document's own file, or ask for one; True if it is safely on disk."""
+    path = document.path
+    if path is None or path.suffix.lower() != SUFFIX:
+        return save_as(document, parent)
+    return _write(document, path, parent)
+
+
+def save_as(document: Document, parent: QWidget) -> bool:
+    """Ask for a file and save there."""
+    start = document.path.with_suffix(SUFFIX) if document.path else None
+    proposed = str(start) if start else str(Path(_folder()) / proposed_name(document))
+    name, _ = QFileDialog.getSaveFileName(parent, "Save as", proposed, LAYOUTS)
+    if not name:
+        return False
+    path = Path(name)
+    if path.suffix.lower() != SUFFIX:
+        path = path.with_name(path.name + SUFFIX)
+        if path.exists() and not _overwrite(path, parent):
+            return False
+    return _write(document, path, parent)
+
+
+def _overwrite(path: Path, parent: QWidget) -> bool:
+    """The dialog asked about the name as typed; ask again for the name with its suffix."""
+    answer = QMessageBox.question(
+        parent, "Bobline", f"“{path.name}” is already there. Put this car in its place?"
+    )
+    return answer == QMessageBox.StandardButton.Yes
+
+
+def _write(document: Document, path: Path, parent: QWidget) -> bool:
+    document.cancel_preview()
+    try:
+        write_job(path, document.job)
+    except OSError as error:
+        QMessageBox.warning(
+            parent,
+            "Bobline",
+            f"“{path.name}” was not saved: {error.strerror or error}.\n\n"
+            "What stood in the file before is untouched and your work is still open here. "
+            "Free some room or pick another folder with Save As.",
+        )
+        return False
+    document.mark_saved(path)
+    settings.add_recent(path)
+    return True
+
+
+def may_close(document: Document, parent: QWidget) -> bool:
+    """Ask about unsaved work; True if the document may be let go."""
+    if not document.is_changed:
+        return True
+    buttons = QMessageBox.StandardButton
+    box = QMessageBox(parent)
+    box.setIcon(QMessageBox.Icon.Question)
+    box.setWindowTitle("Bobline")
+    box.setText(f"Save the changes to “{document.layout.title}”?")
+    box.setInformativeText("Without saving, what you changed since the last save is lost.")
+    box.setStandardButtons(buttons.Save | buttons.Discard | buttons.Cancel)
+    box.setDefaultButton(buttons.Save)
+    box.setWindowModality(Qt.WindowModality.WindowModal)
+    answer = box.exec()
+    if answer == buttons.Save:
+        return save(document, parent)
+    return answer == buttons.Discard
+
+
+def ask_export(parent: QWidget, title: str, name: str, kind: str) -> Path | None:
+    """Where an exported file goes; the suffix of ``kind`` is added if it was left off."""
+    suffix = "." + re.findall(r"\*\.(\w+)", kind)[0]
+    proposed = str(Path(_folder()) / (Path(name).stem + suffix))
+    chosen, _ = QFileDialog.getSaveFileName(parent, title, proposed, kind)
+    if not chosen:
+        return None
+    path = Path(chosen)
+    return path if path.suffix else path.with_suffix(suffix)
+
+
+def tell_written(parent: QWidget, path: Path, error: OSError | None) -> None:
+    """A plain message if an export could not be written."""
+    if error is not None:
+        QMessageBox.warning(
+            parent, "Bobline", f"“{path.name}” was not written: {error.strerror or error}."
+        )

@@ -1,0 +1,1 @@
+"""What leaves the program on paper or as a picture: painters, printers and page files."""

@@ -1,0 +1,88 @@
+"""Printing and its preview, over the same pages that make the PDF.
+
+Qt's print support is imported only when used: it costs time at the start of the program.
+"""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING
+
+from app.sheets.page_layout import page_layout, paint_pages
+from geometry.pages import Pages
+
+if TYPE_CHECKING:
+    from PySide6.QtPrintSupport import QPrinter
+    from PySide6.QtWidgets import QWidget
+
+
+def new_printer(pages: Pages) -> QPrinter:
+    """A printer set up for the pages: the document's name and the first page's paper."""
+    from PySide6.QtPrintSupport import QPrinter
+
+    printer = QPrinter(QPrinter.PrinterMode.HighResolution)
+    printer.setDocName(pages.title)
+    printer.setCreator("Bobline")
+    # Full page, so that a millimeter counts from the sheet's edge; our margins stay clear
+    # of what printers can't reach.
+    printer.setFullPage(True)
+    printer.setPageLayout(page_layout(pages[0].size))
+    return printer
+
+
+def paint_on_printer(printer: QPrinter, pages: Pages) -> None:
+    """Print the pages the printer was told to, as often as it was told. Raises OutputError."""
+    chosen = list(pages.pages)
+    if printer.fromPage() > 0:
+        chosen = chosen[printer.fromPage() - 1 : printer.toPage() or None] or chosen
+    if printer.pageOrder() == printer.PageOrder.LastPageFirst:
+        chosen.reverse()
+    # Where the driver can't make copies, they are drawn again here.
+    copies = 1 if printer.supportsMultipleCopies() else max(1, printer.copyCount())
+    if copies > 1 and not printer.collateCopies():
+        drawn = [page for page in chosen for _ in range(copies)]
+    else:
+        drawn = chosen * copies
+    paint_pages(printer, drawn, printer.resolution())
+
+
+def print_pages(pages: Pages, parent: QWidget | None = None) -> bool:
+    """Ask for a printer and print; False if the person thought better of it.
+
+    Raises OutputError where the printer refuses.
+    """
+    from PySide6.QtPrintSupport import QAbstractPrintDialog, QPrintDialog
+
+    printer = new_printer(pages)
+    dialog = QPrintDialog(printer, parent)
+    dialog.setWindowTitle(f"Print {pages.title}")
+    dialog.setOption(QAbstractPrintDialog.PrintDialogOption.PrintPageRange, len(pages) > 1)
+    dialog.setMinMax(1, len(pages))
+    try:
+        if not dialog.exec():
+            return False
+        paint_on_printer(printer, pages)
+    finally:
+        dialog.deleteLater()
+    return True
+
+
+def preview_pages(pages: Pages, parent: QWidget | None = None) -> None:
+    """Show the pages as they will print; the preview's own button prints them."""
+    from PySide6.QtPrintSupport import QPrintPreviewDialog
+
+    printer = new_printer(pages)
+    dialog = QPrintPreviewDialog(printer, parent)
+    dialog.setWindowTitle(f"Print preview: {pages.title}")
+    dialog.resize(1000, 720)
+    dialog.paintRequested.connect(_painting(pages))
+    try:
+        dialog.exec()
+    finally:
+        dialog.deleteLater()
+
+
+def _painting(pages: Pages):  # type: ignore[no-untyped-def]  # a Qt slot
+    def paint(printer: QPrinter) -> None:
+        paint_on_printer(printer, pages)
+
+    return paint
