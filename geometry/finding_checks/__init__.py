@@ -1,0 +1,1 @@
+"""The checks behind ``geometry.findings``, one subject a module."""

@@ -1,0 +1,81 @@
+"""Numbers as a builder reads them: tape fractions, thousandths for toe, degrees."""
+
+from __future__ import annotations
+
+import math
+from dataclasses import dataclass
+
+from geometry.layout import MM_PER_INCH, UnitName
+from geometry.lengths import format_length
+from geometry.tolerances import Kind
+
+FAR = 30_000.0
+"""Beyond this, mm, a length is only said to be more than it."""
+
+TAPE = {"in": MM_PER_INCH / 16, "mm": 1.0}
+"""What a tape resolves, mm."""
+
+
+@dataclass(frozen=True)
+class Wording:
+    """How one person reads numbers; ``units`` is the layout's."""
+
+    units: UnitName
+
+    @property
+    def travel_step(self) -> float:
+        """The travel by which rates are given, mm: one inch, or 25 mm."""
+        return MM_PER_INCH if self.units == "in" else 25.0
+
+    @property
+    def per_travel(self) -> str:
+        return "per inch of travel" if self.units == "in" else "per 25 mm of travel"
+
+    def tape(self, mm: float) -> str:
+        """A size to the tape's sixteenth (or millimeter), finer where it is small; no sign."""
+        size = abs(mm)
+        if size > FAR:
+            return "more than 100 ft" if self.units == "in" else "more than 30 m"
+        if self.units == "mm":
+            return f"{size:.0f} mm" if size >= 9.95 else f"{size:.1f} mm"
+        denominator = 16 if size >= MM_PER_INCH / 4 else 64
+        text = format_length(size, self.units, denominator)
+        return text if text.endswith("in") else f"{text} in"
+
+    def signed_tape(self, mm: float) -> str:
+        """A place with its sign: below the floor or past the centerline is negative."""
+        return f"-{self.tape(mm)}" if mm < 0.0 else self.tape(mm)
+
+    def counts(self, mm: float) -> bool:
+        """True if a move is big enough to say: half of what the tape resolves."""
+        return abs(mm) >= 0.5 * TAPE[self.units]
+
+    def fine(self, mm: float) -> str:
+        """A toe length in thousandths of an inch or hundredths of a millimeter; no sign."""
+        size = abs(mm)
+        return f"{size / MM_PER_INCH:.3f} in" if self.units == "in" else f"{size:.2f} mm"
+
+    def angle(self, rad: float) -> str:
+        """Degrees to a tenth, to a hundredth where small; signed."""
+        degrees = math.degrees(rad)
+        return f"{degrees:.1f}°" if abs(degrees) >= 1.0 else f"{degrees:.2f}°"
+
+    def rate(self, rad_per_mm: float) -> str:
+        """Degrees per inch (or 25 mm) of travel; signed."""
+        return f"{math.degrees(rad_per_mm) * self.travel_step:.2f}° {self.per_travel}"
+
+    def slope(self, per_mm: float) -> str:
+        """Toe length per inch (or 25 mm) of travel; no sign."""
+        return f"{self.fine(per_mm * self.travel_step)} {self.per_travel}"
+
+    def of(self, value: float, kind: Kind) -> str:
+        """A figure in its own kind's wording."""
+        if kind == "length":
+            return self.signed_tape(value)
+        if kind == "angle":
+            return self.angle(value)
+        return self.rate(value) if kind == "rate" else self.slope(value)
+
+    def span(self, mm: float) -> str:
+        """The chosen travel both ways, as words."""
+        return f"{self.tape(mm)} of bump and {self.tape(mm)} of droop"
