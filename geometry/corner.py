@@ -367,7 +367,10 @@ class Corner:
             if not np.any(np.abs(gap) > 0.05 * TRAVEL_TOLERANCE):
                 break
             slope = (gap - gap_before) / (now - before)
-            move = np.where(gap == 0.0, 0.0, gap / slope)
+            # A pose that is found stays put while others are still looked for: two steps
+            # from the same place have no slope and would throw it anywhere.
+            settled = np.abs(gap) <= 0.05 * TRAVEL_TOLERANCE
+            move = np.where(settled, 0.0, gap / slope)
             after = np.clip(now - np.clip(move, -0.2, 0.2), low, high)
             after = np.where(np.isfinite(after), after, now)
             if np.array_equal(after, now):

@@ -207,6 +207,7 @@ def rack_limits(layout: Layout, travel: float | dict[SideName, float] = 0.0) -> 
         dict(travel) if isinstance(travel, dict) else {side: float(travel) for side in SIDES}
     )
     setting = abs(layout.tolerances.get(RACK_TRAVEL, DEFAULT_RACK_TRAVEL))
+    setting = setting if np.isfinite(setting) else DEFAULT_RACK_TRAVEL
     corners = {side: Corner.of(layout.side(side)) for side in SIDES}
 
     def meets(rack: Array) -> np.ndarray:

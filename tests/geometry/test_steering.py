@@ -108,3 +108,16 @@ def test_a_side_that_does_not_go_together_leaves_no_rack_travel() -> None:
 def test_a_sound_steering_has_no_faults() -> None:
     assert steering_faults(Layout(CORNER)) == []
     assert steering_faults(Layout(CORNER, steering=RELAY)) == []
+
+
+def test_a_pose_does_not_depend_on_what_else_is_solved_beside_it() -> None:
+    """Racks far out of reach in the same array must not throw the ones that are in reach."""
+    corner = Corner.of(CORNER)
+    racks = np.arange(-400.0, 401.0, 5.0)
+    shifts = inner_shifts(Layout(CORNER), racks)["left"]
+    together = corner.poses(0.0, shifts)
+    for k in range(racks.size):
+        alone = corner.poses(0.0, shifts[:, k : k + 1])
+        assert alone.assembles[0] == together.assembles[k]
+        if alone.assembles[0]:
+            assert alone.toe[0] == pytest.approx(together.toe[k], abs=1e-11)
