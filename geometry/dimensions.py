@@ -8,6 +8,7 @@ from __future__ import annotations
 
 import cmath
 import math
+from dataclasses import replace
 from typing import Literal
 
 from geometry.drawing import (
@@ -145,12 +146,12 @@ def angle_dimension(
         arrow_head(arc.at(start), start - outward * (math.pi / 2 - lean), style),
         arrow_head(arc.at(finish), finish + outward * (math.pi / 2 - lean), style),
     )
-    away = cmath.rect(radius + 1.5 * GAP, middle)
-    at = (center[0] + away.real, center[1] + away.imag)
     ink = Style(style.stroke, layer=style.layer)
-    text = Text(at, label, height, _side(math.cos(middle)), "middle", style=ink)
-    if abs(math.cos(middle)) < 0.5:
-        text = Text(at, label, height, "center", "bottom" if away.imag > 0 else "top", style=ink)
+    text = Text(center, label, height, "center", "middle", style=ink)
+    # The tangent at the middle then keeps the label's whole box off the arc.
+    half_box = abs(math.cos(middle)) * text.width / 2 + abs(math.sin(middle)) * height / 2
+    away = cmath.rect(radius + 1.5 * GAP + half_box, middle)
+    text = replace(text, at=(center[0] + away.real, center[1] + away.imag))
     return Drawing((arc, *heads, text))
 
 
@@ -198,10 +199,6 @@ def check_bar(
 def _reads_backward(angle: float) -> bool:
     """True for a direction in which a label would stand on its head."""
     return not -math.pi / 2 + 1e-9 < angle <= math.pi / 2 + 1e-9
-
-
-def _side(cosine: float) -> Horizontal:
-    return "left" if cosine >= 0 else "right"
 
 
 def _place(z: complex) -> Place:

@@ -46,8 +46,8 @@ _COLOR = re.compile("#[0-9a-fA-F]{6}")
 _DROPS = {"baseline": 0.0, "bottom": -BELOW_BASELINE, "middle": 0.5, "top": 1.0}
 _SHARES = {"left": 0.0, "center": 0.5, "right": 1.0}
 _SWAPPED: dict[Horizontal, Horizontal] = {"left": "right", "right": "left", "center": "center"}
-_NOT_TEXT = {code: " " for code in (*range(32), *range(0x7F, 0xA0), 0x2028, 0x2029, 0xFFFE, 0xFFFF)}
-_NOT_TEXT |= {code: "\N{REPLACEMENT CHARACTER}" for code in range(0xD800, 0xE000)}
+_NOT_TEXT = dict.fromkeys((*range(32), *range(0x7F, 0xA0), 0x2028, 0x2029, 0xFFFE, 0xFFFF), " ")
+_NOT_TEXT |= dict.fromkeys(range(0xD800, 0xE000), "\N{REPLACEMENT CHARACTER}")
 
 
 @dataclass(frozen=True)
@@ -69,7 +69,7 @@ class Style:
     def __post_init__(self) -> None:
         for color in (self.stroke, self.fill):
             if color is not None and not _COLOR.fullmatch(color):
-                raise DrawingError(f"'{color}' is not a color; write it as #rrggbb.")
+                raise DrawingError(f"No color is called '{color}'; write it as #rrggbb.")
         if len(self.dash) % 2 or not all(math.isfinite(d) and d > 0 for d in self.dash):
             raise DrawingError("A dash needs lengths above zero in pairs: dash, gap.")
         if not (math.isfinite(self.width) and self.width > 0):

@@ -33,9 +33,10 @@ def replace_file(path: str | os.PathLike[str], data: bytes) -> None:
 
     A link is followed and an existing file's permissions are kept. Raises OutputError.
     """
-    target = Path(os.path.realpath(path))
+    target = Path(path)
     temporary: str | None = None
     try:
+        target = Path(os.path.realpath(path))
         if target.is_dir():
             raise IsADirectoryError(errno.EISDIR, "is a folder")
         handle, temporary = tempfile.mkstemp(prefix=".", suffix=".part", dir=target.parent)

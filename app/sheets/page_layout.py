@@ -5,9 +5,10 @@ from __future__ import annotations
 from collections.abc import Sequence
 
 from PySide6.QtCore import QMarginsF, QSizeF
-from PySide6.QtGui import QPagedPaintDevice, QPageLayout, QPageSize, QPainter
+from PySide6.QtGui import QPagedPaintDevice, QPageLayout, QPageSize, QPainter, QTransform
 
 from app.sheets.painter import paint_page, to_device
+from geometry.drawing import Bounds
 from geometry.layout import MM_PER_INCH
 from geometry.output_file import OutputError
 from geometry.pages import A3, A4, LEGAL, LETTER, TABLOID, Page, PageSize
@@ -35,30 +36,40 @@ def page_layout(size: PageSize) -> QPageLayout:
             QPageSize.SizeMatchPolicy.ExactMatch,
         )
     turned = size.width > size.height
-    orientation = (
-        QPageLayout.Orientation.Landscape if turned else QPageLayout.Orientation.Portrait
-    )
+    orientation = QPageLayout.Orientation.Landscape if turned else QPageLayout.Orientation.Portrait
     layout = QPageLayout(paper, orientation, QMarginsF(0, 0, 0, 0))
     layout.setMode(QPageLayout.Mode.FullPageMode)
     return layout
 
 
-def paint_pages(device: QPagedPaintDevice, pages: Sequence[Page], resolution: int) -> None:
+def paint_pages(
+    device: QPagedPaintDevice, pages: Sequence[Page], resolution: int, one_paper: bool = False
+) -> None:
     """Draw pages one after another at true size; ``resolution`` is the device's, dots per inch.
 
-    Raises OutputError where the device refuses to start or to turn a page.
+    ``one_paper`` is for printers, most of which keep one paper for a whole job: pages that
+    lie on the other side of the same sheet are turned to it. Raises OutputError where the
+    device refuses to start or to turn a page, or a page needs another paper.
     """
-    device.setPageLayout(page_layout(pages[0].size))
+    paper = pages[0].size
+    if one_paper and any(page.size.portrait != paper.portrait for page in pages):
+        raise OutputError("All pages of one print must be on the same size of paper.")
+    device.setPageLayout(page_layout(paper))
     painter = QPainter()
     if not painter.begin(device):
         raise OutputError("The printer or file could not be opened for drawing.")
     try:
         for index, page in enumerate(pages):
             if index:
-                if page.size != pages[index - 1].size:
-                    device.setPageLayout(page_layout(page.size))
+                if page.size != paper and not one_paper:
+                    paper = page.size
+                    device.setPageLayout(page_layout(paper))
                 if not device.newPage():
                     raise OutputError(f"Page {index + 1} could not be printed.")
-            paint_page(painter, page, to_device(page.sheet, resolution / MM_PER_INCH))
+            sheet = Bounds(0.0, 0.0, paper.width, paper.height)
+            on_sheet = QTransform()
+            if page.size != paper:
+                on_sheet = QTransform(0, 1, -1, 0, page.size.height, 0)
+            paint_page(painter, page, on_sheet * to_device(sheet, resolution / MM_PER_INCH))
     finally:
         painter.end()

@@ -25,7 +25,7 @@ def pdf_bytes(pages: Pages) -> bytes:
     writer.setCreator("Bobline")
     writer.setPageLayout(page_layout(pages[0].size))
     paint_pages(writer, pages.pages, RESOLUTION)
-    return buffer.data().data()
+    return bytes(buffer.data().data())
 
 
 def write_pdf(path: str | os.PathLike[str], pages: Pages) -> None:

@@ -53,7 +53,7 @@ def write_png(path: str | os.PathLike[str], image: QImage) -> None:
     # PySide takes the format as text here though its stubs ask for bytes.
     if not image.save(buffer, "PNG"):  # type: ignore[call-overload]
         raise OutputError("The picture could not be made into a PNG file.")
-    replace_file(path, buffer.data().data())
+    replace_file(path, bytes(buffer.data().data()))
 
 
 def _blank(area: Bounds, dpi: float, background: str | None) -> QImage:

@@ -7,7 +7,10 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
+from shiboken6 import delete
+
 from app.sheets.page_layout import page_layout, paint_pages
+from geometry.output_file import OutputError
 from geometry.pages import Pages
 
 if TYPE_CHECKING:
@@ -42,7 +45,7 @@ def paint_on_printer(printer: QPrinter, pages: Pages) -> None:
         drawn = [page for page in chosen for _ in range(copies)]
     else:
         drawn = chosen * copies
-    paint_pages(printer, drawn, printer.resolution())
+    paint_pages(printer, drawn, printer.resolution(), one_paper=True)
 
 
 def print_pages(pages: Pages, parent: QWidget | None = None) -> bool:
@@ -62,27 +65,29 @@ def print_pages(pages: Pages, parent: QWidget | None = None) -> bool:
             return False
         paint_on_printer(printer, pages)
     finally:
-        dialog.deleteLater()
+        # At once, since the dialog points at the printer, which goes when this returns.
+        delete(dialog)
     return True
 
 
 def preview_pages(pages: Pages, parent: QWidget | None = None) -> None:
     """Show the pages as they will print; the preview's own button prints them."""
     from PySide6.QtPrintSupport import QPrintPreviewDialog
+    from PySide6.QtWidgets import QMessageBox
 
     printer = new_printer(pages)
     dialog = QPrintPreviewDialog(printer, parent)
     dialog.setWindowTitle(f"Print preview: {pages.title}")
     dialog.resize(1000, 720)
-    dialog.paintRequested.connect(_painting(pages))
+
+    def paint(printer: QPrinter) -> None:
+        try:
+            paint_on_printer(printer, pages)
+        except OutputError as fault:
+            QMessageBox.warning(dialog, "Print", str(fault))
+
+    dialog.paintRequested.connect(paint)
     try:
         dialog.exec()
     finally:
-        dialog.deleteLater()
-
-
-def _painting(pages: Pages):  # type: ignore[no-untyped-def]  # a Qt slot
-    def paint(printer: QPrinter) -> None:
-        paint_on_printer(printer, pages)
-
-    return paint
+        delete(dialog)
