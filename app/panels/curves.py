@@ -1,0 +1,295 @@
+"""The curves beside the floor: figures through the whole travel, with a cursor on the travel.
+
+Each plot draws its lines as plain path items and its own grid, which costs a tenth of the
+plot library's curve items and grid (see DEVELOPERS.md), and keeps its range until a curve
+leaves it or fills too little of it.
+"""
+
+from __future__ import annotations
+
+import math
+
+import numpy as np
+import pyqtgraph as pg
+from PySide6.QtCore import QPointF, QRectF, Qt, Signal
+from PySide6.QtGui import QColor, QFont, QMouseEvent, QPainterPath, QPen
+from PySide6.QtWidgets import (
+    QDialog,
+    QGraphicsPathItem,
+    QGraphicsRectItem,
+    QGridLayout,
+    QHBoxLayout,
+    QSizePolicy,
+    QVBoxLayout,
+    QWidget,
+)
+
+from app import theme
+from app.document import Document
+from geometry.curves import BY_KEY, Curve, axis_label, in_units
+from geometry.layout import MM_PER_INCH, SideName
+from geometry.solution import Solution
+
+SHOWN = ("toe", "camber", "roll center", "track")
+COLORS = {"toe": "#D55E00", "camber": "#0072B2", "roll center": "#009E73", "track": "#8B3A6F"}
+FOUND_COLOR = "#8C8A84"
+BAND_COLOR = "#E4EFE4"
+
+
+def _pen(color: str, width: float, style: Qt.PenStyle = Qt.PenStyle.SolidLine) -> QPen:
+    pen = QPen(QColor(color), width, style)
+    pen.setCosmetic(True)
+    return pen
+
+
+def nice_range(low: float, high: float) -> tuple[float, float]:
+    """A range of round numbers that holds [low, high] with some air."""
+    span = max(high - low, 1e-3)
+    step = 10.0 ** math.floor(math.log10(span))
+    step = next(step * m for m in (0.1, 0.2, 0.5, 1.0, 2.0) if span / (step * m) <= 8.0)
+    return math.floor((low - 0.05 * span) / step) * step, math.ceil((high + 0.05 * span) / step) * step
+
+
+def label_step(low: float, high: float, most: int) -> float:
+    """The distance between at most ``most`` round-numbered labels on a range."""
+    rough = (high - low) / max(most, 1)
+    power = 10.0 ** math.floor(math.log10(rough))
+    return next(power * m for m in (1.0, 2.0, 5.0, 10.0) if power * m >= rough * (1 - 1e-9))
+
+
+class _Plot(pg.PlotWidget):
+    """A plot that reports where a person puts the cursor and that it was double-clicked."""
+
+    picked = Signal(float)
+    enlarged = Signal()
+
+    def __init__(self) -> None:
+        super().__init__(background=theme.CARD, enableMenu=False)
+        self.hideButtons()
+        self.setMouseEnabled(False, False)
+        self.setViewportUpdateMode(self.ViewportUpdateMode.BoundingRectViewportUpdate)
+        self.setSizePolicy(QSizePolicy.Policy.Expanding, QSizePolicy.Policy.Ignored)
+        self.setMinimumHeight(110)
+
+    def _pick(self, event: QMouseEvent) -> None:
+        scene = self.mapToScene(event.position().toPoint())
+        self.picked.emit(float(self.getViewBox().mapSceneToView(scene).x()))
+
+    def mousePressEvent(self, event: QMouseEvent) -> None:
+        if event.button() == Qt.MouseButton.LeftButton:
+            self._pick(event)
+        event.accept()
+
+    def mouseMoveEvent(self, event: QMouseEvent) -> None:
+        if event.buttons() & Qt.MouseButton.LeftButton:
+            self._pick(event)
+        event.accept()
+
+    def mouseReleaseEvent(self, event: QMouseEvent) -> None:
+        event.accept()
+
+    def mouseDoubleClickEvent(self, event: QMouseEvent) -> None:
+        self.enlarged.emit()
+        event.accept()
+
+    def wheelEvent(self, event: object) -> None:
+        """Plots keep their range; the wheel stays with the panel."""
+
+
+class CurvePlot(QWidget):
+    """One curve: as planned strong, as found dashed behind, band, grid and travel cursor."""
+
+    def __init__(self, curve: Curve, document: Document, *, large: bool = False) -> None:
+        super().__init__()
+        self.curve = curve
+        self._document = document
+        self._large = large
+        self._range: tuple[float, float] | None = None
+        self._frame: tuple[float, float, float, str] | None = None
+        column = QVBoxLayout(self)
+        column.setContentsMargins(0, 0, 0, 0)
+        column.setSpacing(0)
+        self.plot = _Plot()
+        column.addWidget(self.plot)
+        box = self.plot.getPlotItem()
+        box.setContentsMargins(2, 2, 8, 2)
+        small = QFont(self.font())
+        small.setPointSizeF(small.pointSizeF() * (1.0 if large else 0.85))
+        for name in ("left", "bottom"):
+            axis = box.getAxis(name)
+            axis.setStyle(tickFont=small, tickLength=-3)
+            axis.setPen(QPen(QColor(theme.LINE)))
+            axis.setTextPen(QPen(QColor(theme.QUIET)))
+        box.getAxis("left").setWidth(self.fontMetrics().horizontalAdvance("−0.000") + 8)
+        box.getAxis("bottom").setHeight(self.fontMetrics().height() + 6)
+        self._band = QGraphicsRectItem()
+        self._band.setPen(QPen(Qt.PenStyle.NoPen))
+        self._band.setBrush(QColor(BAND_COLOR))
+        self._grid = self._path("#E6E2D8", 1.0)
+        self._found = self._path(FOUND_COLOR, 1.0, Qt.PenStyle.DashLine)
+        color = COLORS.get(curve.key, theme.STEEL)
+        self._right = self._path(color, 1.0, Qt.PenStyle.DotLine)
+        self._planned = self._path(color, 2.0 if large else 1.5)
+        self._cursor = self._path(theme.INK, 1.0)
+        self.plot.addItem(self._band)
+        for item in (self._grid, self._found, self._right, self._planned, self._cursor):
+            self.plot.addItem(item)
+        self.plot.picked.connect(self._set_travel)
+        self.plot.setAccessibleName(f"{curve.label} through the travel")
+        self.plot.setToolTip(
+            "Click or drag to move the wheels. Solid: as planned; dotted: right side where it "
+            "differs; dashed gray: as found; tinted: within tolerance. Double-click: large."
+        )
+        self.refresh()
+
+    def _path(
+        self, color: str, width: float, style: Qt.PenStyle = Qt.PenStyle.SolidLine
+    ) -> QGraphicsPathItem:
+        item = QGraphicsPathItem()
+        item.setPen(_pen(color, width, style))
+        return item
+
+    def _set_travel(self, place: float) -> None:
+        scale = MM_PER_INCH if self._document.units == "in" else 1.0
+        span = self._document.span
+        travel = min(max(place * scale, -span), span)
+        self._document.set_travel(travel, travel)
+
+    def _lines(self, solution: Solution, side: SideName) -> tuple[np.ndarray, np.ndarray]:
+        units = self._document.units
+        travel = in_units("length", solution.sides[side].sweep.travel, units)
+        return travel, in_units(self.curve.kind, self.curve.read(solution, side), units)
+
+    def refresh(self) -> None:
+        """Draw the document's solution."""
+        document = self._document
+        solution, found = document.solution, document.found_solution
+        units = document.units
+        x, y = self._lines(solution, "left")
+        drawn = [y]
+        self._set_path(self._planned, x, y)
+        right_x, right_y = self._lines(solution, "right")
+        differs = self.curve.key != "roll center" and not np.array_equal(y, right_y, equal_nan=True)
+        self._right.setVisible(differs)
+        if differs:
+            self._set_path(self._right, right_x, right_y)
+            drawn.append(right_y)
+        self._found.setVisible(found is not None)
+        if found is not None:
+            found_x, found_y = self._lines(found, "left")
+            self._set_path(self._found, found_x, found_y)
+            drawn.append(found_y)
+        values = np.concatenate(drawn)
+        values = values[np.isfinite(values)]
+        low, high = (float(values.min()), float(values.max())) if values.size else (-1.0, 1.0)
+        if self.curve.band is not None:
+            self._place_band(solution, x, y)
+        self._fit_range(float(x[0]), float(x[-1]), low, high, units)
+        self._place_cursor(units)
+
+    def _set_path(self, item: QGraphicsPathItem, x: np.ndarray, y: np.ndarray) -> None:
+        item.setPath(pg.arrayToQPath(x, y, connect="finite"))
+
+    def _place_band(self, solution: Solution, x: np.ndarray, y: np.ndarray) -> None:
+        assert self.curve.band is not None
+        half = float(
+            in_units(self.curve.kind, np.array(self.curve.band(solution)), self._document.units)
+        )
+        middle = float(y[len(y) // 2])
+        visible = math.isfinite(middle)
+        self._band.setVisible(visible)
+        if visible:
+            self._band.setRect(
+                QRectF(float(x[0]), middle - half, float(x[-1] - x[0]), 2.0 * half)
+            )
+
+    def _fit_range(self, left: float, right: float, low: float, high: float, units: str) -> None:
+        """Keep the range while the curves fit it well; a moving range costs four frames."""
+        kept = self._range
+        least = {"length": 0.05 if units == "in" else 1.0, "angle": 0.5}[self.curve.kind]
+        if high - low < least:
+            middle = 0.5 * (low + high)
+            low, high = middle - 0.5 * least, middle + 0.5 * least
+        fits = kept is not None and kept[0] <= low and high <= kept[1]
+        roomy = kept is not None and (kept[1] - kept[0]) > 4.0 * (high - low)
+        if not fits or roomy:
+            self._range = nice_range(low, high)
+        assert self._range is not None
+        frame = (left, right, *self._range, units)
+        if frame == self._frame:
+            return
+        self._frame = frame
+        box = self.plot.getPlotItem()
+        box.setTitle(axis_label(self.curve, self._document.units), color=theme.INK,
+                     size=f"{self.font().pointSizeF():.1f}pt")
+        self.plot.setRange(xRange=(left, right), yRange=self._range, padding=0.0)
+        y_step = label_step(*self._range, 8 if self._large else 4)
+        x_step = label_step(left, right, 12 if self._large else 6)
+        decimals = max(0, -math.floor(math.log10(y_step) + 1e-9))
+        xs = np.arange(math.ceil(left / x_step), math.floor(right / x_step) + 1) * x_step
+        ys = np.arange(
+            math.ceil(self._range[0] / y_step - 1e-9), math.floor(self._range[1] / y_step + 1e-9) + 1
+        ) * y_step
+        box.getAxis("bottom").setTicks([[(float(v), f"{v:+g}" if v else "0") for v in xs]])
+        box.getAxis("left").setTicks([[(float(v), f"{v:.{decimals}f}") for v in ys]])
+        grid = QPainterPath()
+        for v in xs:
+            grid.moveTo(float(v), self._range[0])
+            grid.lineTo(float(v), self._range[1])
+        for v in ys:
+            grid.moveTo(left, float(v))
+            grid.lineTo(right, float(v))
+        self._grid.setPath(grid)
+
+    def _place_cursor(self, units: str) -> None:
+        travel = self._document.travel["left"]
+        at = travel / MM_PER_INCH if units == "in" else travel
+        assert self._range is not None
+        path = QPainterPath(QPointF(at, self._range[0]))
+        path.lineTo(at, self._range[1])
+        self._cursor.setPath(path)
+
+
+class CurvesPanel(QWidget):
+    """A row of the curves that matter most; any of them opens large."""
+
+    def __init__(self, document: Document, parent: QWidget | None = None) -> None:
+        super().__init__(parent)
+        self._document = document
+        row = QHBoxLayout(self)
+        row.setContentsMargins(0, 0, 0, 0)
+        row.setSpacing(6)
+        self.plots: list[CurvePlot] = []
+        for key in SHOWN:
+            plot = CurvePlot(BY_KEY[key], document)
+            plot.plot.enlarged.connect(self.enlarge)
+            self.plots.append(plot)
+            row.addWidget(plot)
+        self.setMinimumHeight(130)
+        self._large: QDialog | None = None
+        self._large_plots: list[CurvePlot] = []
+        document.solved.connect(self.refresh)
+        document.edited.connect(self.refresh)
+        document.opened.connect(self.refresh)
+
+    def refresh(self) -> None:
+        for plot in self.plots:
+            plot.refresh()
+        if self._large is not None and self._large.isVisible():
+            for plot in self._large_plots:
+                plot.refresh()
+
+    def enlarge(self) -> None:
+        """All curves in a window of their own, alive beside the floor."""
+        if self._large is None:
+            self._large = QDialog(self.window())
+            self._large.setWindowTitle("Curves through the travel")
+            grid = QGridLayout(self._large)
+            for index, curve in enumerate(BY_KEY.values()):
+                plot = CurvePlot(curve, self._document, large=True)
+                self._large_plots.append(plot)
+                grid.addWidget(plot, index // 2, index % 2)
+            self._large.resize(1000, 820)
+        self._large.show()
+        self._large.raise_()
+        self.refresh()
