@@ -68,7 +68,7 @@ def dxf_bytes(drawing: Drawing, units: UnitName = "mm") -> bytes:
     return text.getvalue().encode(document.output_encoding, "dxfreplace")
 
 
-def write_dxf(path: str | os.PathLike[str], drawing: Drawing, units: UnitName = "mm") -> None:
+def write_dxf(drawing: Drawing, path: str | os.PathLike[str], units: UnitName = "mm") -> None:
     """Write the drawing to a DXF file. Raises DrawingError or OutputError."""
     replace_file(path, dxf_bytes(drawing, units))
 

@@ -10,7 +10,7 @@ from pathlib import Path
 
 _REASONS = {
     errno.EACCES: "you have no permission to write there",
-    errno.EPERM: "you have no permission to write there",
+    errno.EPERM: "the file is write-protected",
     errno.EROFS: "the disk can only be read",
     errno.ENOENT: "the folder does not exist",
     errno.ENOTDIR: "the folder does not exist",
@@ -39,6 +39,8 @@ def replace_file(path: str | os.PathLike[str], data: bytes) -> None:
         target = Path(os.path.realpath(path))
         if target.is_dir():
             raise IsADirectoryError(errno.EISDIR, "is a folder")
+        if target.exists() and not os.access(target, os.W_OK):
+            raise PermissionError(errno.EPERM, "is write-protected")
         handle, temporary = tempfile.mkstemp(prefix=".", suffix=".part", dir=target.parent)
         with os.fdopen(handle, "wb") as file:
             file.write(data)

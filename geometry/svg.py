@@ -60,7 +60,7 @@ def svg_text(drawing: Drawing, title: str = "", margin: float = 2.0) -> str:
 
 
 def write_svg(
-    path: str | os.PathLike[str], drawing: Drawing, title: str = "", margin: float = 2.0
+    drawing: Drawing, path: str | os.PathLike[str], title: str = "", margin: float = 2.0
 ) -> None:
     """Write the drawing to an SVG file. Raises DrawingError or OutputError."""
     replace_file(path, svg_text(drawing, title, margin).encode("utf-8"))

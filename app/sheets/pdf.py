@@ -28,6 +28,6 @@ def pdf_bytes(pages: Pages) -> bytes:
     return bytes(buffer.data().data())
 
 
-def write_pdf(path: str | os.PathLike[str], pages: Pages) -> None:
+def write_pdf(pages: Pages, path: str | os.PathLike[str]) -> None:
     """Write the pages to a PDF file; an older one stays whole until then. Raises OutputError."""
     replace_file(path, pdf_bytes(pages))

@@ -46,8 +46,17 @@ def page_image(page: Page, dpi: float = 150.0, background: str | None = "#ffffff
     return image
 
 
-def write_png(path: str | os.PathLike[str], image: QImage) -> None:
-    """Write a picture to a PNG file. Raises OutputError."""
+def write_png(
+    subject: Drawing | Page,
+    path: str | os.PathLike[str],
+    dpi: float = 150.0,
+    background: str | None = "#ffffff",
+) -> None:
+    """Write a drawing or a page to a PNG file. Raises DrawingError or OutputError."""
+    if isinstance(subject, Page):
+        image = page_image(subject, dpi, background)
+    else:
+        image = drawing_image(subject, dpi, background=background)
     buffer = QBuffer()
     buffer.open(QIODevice.OpenModeFlag.WriteOnly)
     # PySide takes the format as text here though its stubs ask for bytes.

@@ -5,13 +5,14 @@ Qt's print support is imported only when used: it costs time at the start of the
 
 from __future__ import annotations
 
+from collections.abc import Iterable
 from typing import TYPE_CHECKING
 
 from shiboken6 import delete
 
 from app.sheets.page_layout import page_layout, paint_pages
 from geometry.output_file import OutputError
-from geometry.pages import Pages
+from geometry.pages import Page, Pages
 
 if TYPE_CHECKING:
     from PySide6.QtPrintSupport import QPrinter
@@ -48,41 +49,43 @@ def paint_on_printer(printer: QPrinter, pages: Pages) -> None:
     paint_pages(printer, drawn, printer.resolution(), one_paper=True)
 
 
-def print_pages(pages: Pages, parent: QWidget | None = None) -> bool:
+def print_pages(pages: Iterable[Page], title: str, parent: QWidget | None = None) -> bool:
     """Ask for a printer and print; False if the person thought better of it.
 
     Raises OutputError where the printer refuses.
     """
     from PySide6.QtPrintSupport import QAbstractPrintDialog, QPrintDialog
 
-    printer = new_printer(pages)
+    document = Pages(tuple(pages), title)
+    printer = new_printer(document)
     dialog = QPrintDialog(printer, parent)
-    dialog.setWindowTitle(f"Print {pages.title}")
-    dialog.setOption(QAbstractPrintDialog.PrintDialogOption.PrintPageRange, len(pages) > 1)
-    dialog.setMinMax(1, len(pages))
+    dialog.setWindowTitle(f"Print {title}")
+    dialog.setOption(QAbstractPrintDialog.PrintDialogOption.PrintPageRange, len(document) > 1)
+    dialog.setMinMax(1, len(document))
     try:
         if not dialog.exec():
             return False
-        paint_on_printer(printer, pages)
+        paint_on_printer(printer, document)
     finally:
         # At once, since the dialog points at the printer, which goes when this returns.
         delete(dialog)
     return True
 
 
-def preview_pages(pages: Pages, parent: QWidget | None = None) -> None:
+def preview_pages(pages: Iterable[Page], title: str, parent: QWidget | None = None) -> None:
     """Show the pages as they will print; the preview's own button prints them."""
     from PySide6.QtPrintSupport import QPrintPreviewDialog
     from PySide6.QtWidgets import QMessageBox
 
-    printer = new_printer(pages)
+    document = Pages(tuple(pages), title)
+    printer = new_printer(document)
     dialog = QPrintPreviewDialog(printer, parent)
-    dialog.setWindowTitle(f"Print preview: {pages.title}")
+    dialog.setWindowTitle(f"Print preview: {title}")
     dialog.resize(1000, 720)
 
     def paint(printer: QPrinter) -> None:
         try:
-            paint_on_printer(printer, pages)
+            paint_on_printer(printer, document)
         except OutputError as fault:
             QMessageBox.warning(dialog, "Print", str(fault))
 

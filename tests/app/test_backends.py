@@ -129,7 +129,7 @@ def test_pdf_pages_keep_their_own_sizes_in_order():
 def test_pdf_names_its_title_and_program_and_holds_text_as_text(tmp_path):
     page = Page().with_placed(group(Text((20, 200), "Raise the rack 5/16 in")))
     path = tmp_path / "sheet.pdf"
-    write_pdf(path, Pages((page,), title="Build sheet"))
+    write_pdf(Pages((page,), title="Build sheet"), path)
     pdf = path.read_bytes()
     assert pdf.startswith(b"%PDF-")
     assert "Build sheet".encode("utf-16-be") in pdf
@@ -140,17 +140,17 @@ def test_pdf_names_its_title_and_program_and_holds_text_as_text(tmp_path):
     assert b"/FontFile2" in pdf
 
 
-def test_pdf_that_cannot_be_written_says_why_and_keeps_the_old_one(tmp_path):
+def test_pdf_that_cannot_be_written_says_why(tmp_path):
     pages = Pages((Page(),))
     with pytest.raises(OutputError, match="the folder does not exist"):
-        write_pdf(tmp_path / "none" / "sheet.pdf", pages)
+        write_pdf(pages, tmp_path / "none" / "sheet.pdf")
 
 
 def test_pdf_renders_as_an_outside_reader_sees_it(tmp_path):
     """A check with poppler's pdftoppm, where it is installed."""
     path = tmp_path / "sheet.pdf"
     bar = Polygon(((0, 0), (100, 0), (100, 10), (0, 10)), style=Style(None, fill="#0000ff"))
-    write_pdf(path, Pages((Page(A4).with_placed(group(bar), (50, 100)),)))
+    write_pdf(Pages((Page(A4).with_placed(group(bar), (50, 100)),)), path)
     try:
         subprocess.run(["pdftoppm", "-r", "254", "-png", path, tmp_path / "p"], check=True)
     except FileNotFoundError:
@@ -193,7 +193,7 @@ def read_dxf(path):
 @pytest.mark.parametrize(("units", "code", "unit"), [("in", 1, 25.4), ("mm", 4, 1.0)])
 def test_dxf_reads_back_clean_at_true_size(tmp_path, units, code, unit):
     path = tmp_path / "parts.dxf"
-    write_dxf(path, PARTS, units)
+    write_dxf(PARTS, path, units)
     document = read_dxf(path)
     assert document.dxfversion == "AC1024"
     assert document.header["$INSUNITS"] == code
@@ -217,7 +217,7 @@ def test_dxf_reads_back_clean_at_true_size(tmp_path, units, code, unit):
 
 def test_dxf_holes_fills_colors_and_dashes_survive(tmp_path):
     path = tmp_path / "parts.dxf"
-    write_dxf(path, PARTS, "in")
+    write_dxf(PARTS, path, "in")
     document = read_dxf(path)
     space = document.modelspace()
     outlines = [p for p in space.query("LWPOLYLINE") if p.dxf.layer == "no-go"]
@@ -318,10 +318,12 @@ def test_page_picture_clips_what_is_placed_in_a_window():
 
 def test_png_file_reads_back_and_refuses_what_is_too_large(tmp_path):
     path = tmp_path / "shapes.png"
-    write_png(path, drawing_image(SHAPES, dpi=50, background=None))
+    write_png(SHAPES, path, dpi=50, background=None)
     back = QImage(str(path))
     assert not back.isNull()
     assert back.pixelColor(0, 0).alpha() == 0
+    write_png(Page(A4), path, dpi=25.4)
+    assert (QImage(str(path)).width(), QImage(str(path)).height()) == (210, 297)
     with pytest.raises(DrawingError, match="too large"):
         drawing_image(SHAPES, dpi=100_000)
 
@@ -397,7 +399,7 @@ def test_preview_shows_every_page():
 
 
 def test_preview_dialog_opens_paints_and_closes():
-    pages = Pages((Page(LETTER).with_placed(SHAPES, (20, 20)),), "Pattern")
+    pages = [Page(LETTER).with_placed(SHAPES, (20, 20))]
     seen = []
 
     def close_it():
@@ -406,7 +408,7 @@ def test_preview_dialog_opens_paints_and_closes():
         dialog.reject()
 
     QTimer.singleShot(200, close_it)
-    preview_pages(pages)
+    preview_pages(pages, "Pattern")
     assert seen == ["Print preview: Pattern"]
 
 

@@ -270,7 +270,7 @@ def test_file_is_replaced_whole_and_leaves_nothing_beside_it(tmp_path):
     path = tmp_path / "arm.svg"
     path.write_text("old")
     path.chmod(0o640)
-    write_svg(path, EVERY_ITEM, "Arm")
+    write_svg(EVERY_ITEM, path, "Arm")
     assert ET.parse(path).getroot().tag == f"{{{NAMESPACE}}}svg"
     assert path.stat().st_mode & 0o777 == 0o640
     assert [p.name for p in tmp_path.iterdir()] == ["arm.svg"]
