@@ -9,10 +9,9 @@ from typing import Literal
 import numpy as np
 
 from geometry import layout as names
-from geometry.corner import UP
 from geometry.finding_checks.finding import Cure, Finding, Move, Subject
 from geometry.layout import Side
-from geometry.linkage import Array, cross
+from geometry.linkage import Array
 from geometry.tolerances import camber_gain, lower_arm_slope
 
 ArmName = Literal["lower", "upper"]
@@ -46,13 +45,23 @@ def rise_to_aim(subject: Subject, arm: ArmName, target: Array) -> float | None:
     """
     corner = subject.state.corner
     front, rear = corner.axis_of(arm)
-    ball = (corner.lower_ball if arm == "lower" else corner.points[names.UPPER_BALL])[:, 0]
-    axis = front[:, 0] - rear[:, 0]
-    place = np.array([corner.wheel_center[0, 0], target[0], target[1]])
-    way = place - ball if target[2] == 1.0 else np.array([0.0, target[0], target[1]])
-    normal = cross(axis, ball - rear[:, 0])
-    change = cross(axis, UP[:, 0])
-    rise = float(np.dot(normal, way) / np.dot(change, way))
+    ball = corner.lower_ball if arm == "lower" else corner.points[names.UPPER_BALL]
+    along = (front - rear)[:, 0].tolist()
+    out = (ball - rear)[:, 0].tolist()
+    over, up, w = (float(v) for v in target)
+    way = [0.0, over, up]
+    if w == 1.0:
+        ball_fore, ball_over, ball_up = ball[:, 0].tolist()
+        way = [float(corner.wheel_center[0, 0]) - ball_fore, over - ball_over, up - ball_up]
+    normal = (
+        along[1] * out[2] - along[2] * out[1],
+        along[2] * out[0] - along[0] * out[2],
+        along[0] * out[1] - along[1] * out[0],
+    )
+    change = along[1] * way[0] - along[0] * way[1]
+    if change == 0.0:
+        return None
+    rise = sum(n * v for n, v in zip(normal, way, strict=True)) / change
     return rise if math.isfinite(rise) and abs(rise) < 1e4 else None
 
 
@@ -100,6 +109,8 @@ def _level(subject: Subject) -> Iterator[Finding]:
 
 def _gain_cure(subject: Subject, gain: float) -> Cure | None:
     """Turn the upper arm (a strut's lower arm) about its ball joint until camber gain fits."""
+    if gain == 0.0:
+        return None
     state, words = subject.state, subject.words
     arm: ArmName = "lower" if state.side.is_strut else "upper"
     line = (state.ride_view.upper_line if arm == "lower" else state.ride_view.lower_line)[:, 0]

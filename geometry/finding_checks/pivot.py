@@ -54,7 +54,7 @@ def _off_its_spot(subject: Subject, lengths: Array, total: float) -> Finding:
     severity: Severity = "wrong" if total > subject.limit("toe range wrong") else "warn"
     span = words.span(subject.solution.span)
     detail = f"Toe at this wheel changes {words.fine(total)} in all over {span}, rack centered."
-    limit = f"{words.fine(subject.limit('toe range'))} per wheel over the chosen travel"
+    limit = f"{words.toe_limit(subject.limit('toe range'))} per wheel over the chosen travel"
     points = (names.TIE_INNER, names.TIE_OUTER)
     first = _first_bump(subject, lengths)
     best, left = pivots.place("best fit"), pivots.ranges["best fit"]
@@ -154,8 +154,8 @@ def _aim(subject: Subject, lengths: Array, severity: Severity) -> Iterator[Findi
     yield subject.finding(
         "tie-rod-aim",
         severity,
-        f"{subject.name('tie rod')} {_miss(subject)}: {words.slope(slope)} toe-{direction} "
-        "in bump at ride height.",
+        f"{subject.name('tie rod')} {_miss(subject)}: "
+        f"{words.slope(slope, f' toe-{direction}')} in bump, at ride height.",
         "Aimed at the instant center, the tie rod starts out with no toe change.",
         figure=slope,
         kind="slope",

@@ -25,7 +25,7 @@ def check(subject: Subject) -> Iterator[Finding]:
             "pose-out-of-reach",
             "wrong",
             f"{subject.name('wheel')} can't get to {where}{steered}: the parts don't meet there.",
-            f"{_stops(subject)} It is drawn no further than that.".strip(),
+            _stops(subject),
             figure=travel,
             points=points,
         )

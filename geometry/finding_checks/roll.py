@@ -7,12 +7,13 @@ from collections.abc import Iterator
 
 import numpy as np
 
-from geometry.corner import contact_point
-from geometry.finding_checks.arms import arm_points, pivot_names, rise_to_aim
+from geometry.finding_checks.arms import ArmName, arm_points, pivot_names, rise_to_aim
 from geometry.finding_checks.finding import Cure, Finding, Move, Subject
-from geometry.linkage import Array, cross, dot, homogeneous, line_through, meeting, unit
+from geometry.linkage import PARALLEL_SINE, line_through, meeting
 from geometry.solution import CornerState, Solution
 
+LOWER_ONLY: tuple[ArmName, ...] = ("lower",)
+BOTH_ARMS: tuple[ArmName, ...] = ("lower", "upper")
 INSIDE = 0.25
 """A cure aims this share of the allowed range inside of the limit."""
 
@@ -46,7 +47,8 @@ def check(subjects: tuple[Subject, ...]) -> Iterator[Finding]:
             "roll-center-low" if up < low else "roll-center-high",
             "warn",
             f"Roll center is {words.tape(up)} {under}, too {'low' if up < low else 'high'}.",
-            f"Usual: {words.signed_tape(low)} to {words.signed_tape(high)} above the floor.",
+            f"Usual: {words.signed_tape(low)} to {words.signed_tape(high)} above the floor. "
+            "Moving an arm moves the tie rod's best spot as well: set the rack after it.",
             figure=up,
             key="roll center low" if up < low else "roll center high",
             cure=_height_cure(subjects, wanted),
@@ -73,22 +75,19 @@ def _height_cure(subjects: tuple[Subject, ...], wanted: float) -> Cure | None:
         center = view.instant_center[:, 0]
         if side.is_strut:
             goal = meeting(contact_line, view.upper_line[:, 0])
-            arms = ("lower",)
+            arms = LOWER_ONLY
         else:
             vertical = np.array([1.0, 0.0, -center[0]])
             goal = meeting(contact_line, vertical)
             if center[2] != 1.0:
                 # Parallel arms stay parallel and take the contact line's slope.
                 goal = np.array([-contact_line[1], contact_line[0], 0.0])
-            arms = ("lower", "upper")
+            arms = BOTH_ARMS
         for arm in arms:
-            rise = rise_to_aim(subject, "lower" if arm == "lower" else "upper", goal)
+            rise = rise_to_aim(subject, arm, goal)
             if rise is None:
                 return None
-            moves += [
-                subject.move(n, up=rise)
-                for n in pivot_names(side, "lower" if arm == "lower" else "upper")
-            ]
+            moves += [subject.move(pivot, up=rise) for pivot in pivot_names(side, arm)]
             if words.counts(rise):
                 parts.append(
                     f"{'raise' if rise > 0.0 else 'lower'} the "
@@ -134,64 +133,78 @@ def roll_center_by_path(solution: Solution) -> float | None:
     For a plane linkage this is the construction's height. None also if a wheel can't move a
     little either way.
     """
-    with np.errstate(all="ignore"):
-        lines = []
-        for state in solution.sides.values():
-            contact, tangent = _contact_path(state)
-            lines.append((contact, np.array([tangent[1], tangent[2], 0.0])))
-            if state.name == "left" and solution.right.ride is state.ride:
-                lines.append(lines[0])
-                break
-        (left, left_way), (right, right_way) = lines
-        left_line = _normal_line(left, left_way)
-        right_line = _normal_line(right, right_way) * np.array([-1.0, 1.0, 1.0])
-        point = meeting(left_line, right_line)
-        if point[2] != 1.0:
-            return None
-        floor = line_through(
-            homogeneous(-right[1], right[2]), homogeneous(left[1], left[2])
-        )
-        floor = floor if floor[1] > 0.0 else -floor
-        height = float(floor[0] * point[0] + floor[1] * point[1] + floor[2])
-        return height if math.isfinite(height) else None
+    left, left_way = _contact_path(solution.left)
+    linked = solution.right.ride is solution.left.ride
+    right, right_way = (left, left_way) if linked else _contact_path(solution.right)
+    values = (*left, *left_way, *right, *right_way)
+    if not all(math.isfinite(value) for value in values):
+        return None
+    # In the left side's over: the lines a over + b up = c across each path.
+    a, b = left_way
+    c = a * left[0] + b * left[1]
+    d, e = -right_way[0], right_way[1]
+    f = -d * right[0] + e * right[1]
+    det = a * e - b * d
+    if abs(det) <= PARALLEL_SINE * math.hypot(a, b) * math.hypot(d, e):
+        return None
+    over, up = (c * e - b * f) / det, (a * f - c * d) / det
+    base, rise = left[0] + right[0], left[1] - right[1]
+    size = math.hypot(base, rise)
+    if size == 0.0:
+        return None
+    # Height above the line through both contacts, the floor they stand on.
+    height = ((over - left[0]) * -rise + (up - left[1]) * base) / size
+    return math.copysign(1.0, base) * height
 
 
-def _normal_line(through: Array, way: Array) -> Array:
-    """The front-view line across a path's direction ``way`` (over, up, -)."""
-    size = np.hypot(way[0], way[1])
-    a, b = way[0] / size, way[1] / size
-    return np.array([a, b, -(a * through[1] + b * through[2])])
-
-
-def _contact_path(state: CornerState) -> tuple[Array, Array]:
-    """The contact point (3,) at ride height and its velocity (3,) per travel, toe held.
+def _contact_path(state: CornerState) -> tuple[tuple[float, float], tuple[float, float]]:
+    """The contact point (over, up) at ride height and its velocity per travel, toe held.
 
     The motion of the sweep's three middle poses, less the turn about the kingpin that its
     toe change stands for: bump steer must not pass for the arms' doing.
     """
-    step = state.pivots.motion.travel[-1] / (state.pivots.motion.travel.size // 2)
+    middle = state.sweep.travel.size // 2
+    contact, toe = state.sweep.contact[:, middle - 1 : middle + 2], state.sweep.toe
+    toe = toe[middle - 1 : middle + 2]
+    step = float(state.sweep.travel[middle + 1])
     if bool(np.any(state.shift != 0.0)):
+        # The sweep is a steered one; the path is judged straight ahead.
         near = state.corner.poses(np.array([-step, 0.0, step]))
         contact, toe = near.contact, near.toe
-    else:
-        middle = state.sweep.travel.size // 2
-        contact = state.sweep.contact[:, middle - 1 : middle + 2]
-        toe = state.sweep.toe[middle - 1 : middle + 2]
-    velocity = (contact[:, 2] - contact[:, 0]) / (2.0 * step)
-    toe_rate = (toe[2] - toe[0]) / (2.0 * step)
-    ride, turn = state.ride, np.array([-1e-4, 1e-4])
-    axis = unit(ride.upper_ball - ride.lower_ball)
+    toe_rate = float(toe[2] - toe[0]) / (2.0 * step)
+    over_rate, up_rate = (float(v) / (2.0 * step) for v in contact[1:, 2] - contact[1:, 0])
+    over_turn, up_turn, toe_turn = _turning(state)
+    share = toe_rate / toe_turn if toe_turn else math.nan
+    place = float(contact[1, 1]), float(contact[2, 1])
+    return place, (over_rate - share * over_turn, up_rate - share * up_turn)
 
-    def turned(vector: Array) -> Array:
-        return np.asarray(
-            np.cos(turn) * vector
-            + np.sin(turn) * cross(axis, vector)
-            + (1.0 - np.cos(turn)) * dot(axis, vector) * axis
-        )
 
-    wheel = ride.lower_ball + turned(ride.wheel_center - ride.lower_ball)
-    spin = turned(ride.spin_axis)
-    steered = contact_point(wheel, spin, np.broadcast_to(state.corner.tire_radius, (2,)))
-    steered_toe = np.arctan2(spin[0], spin[1])
-    per_toe = (steered[:, 1] - steered[:, 0]) / (steered_toe[1] - steered_toe[0])
-    return contact[:, 1], velocity - toe_rate * per_toe
+def _turning(state: CornerState) -> tuple[float, float, float]:
+    """Rates per turn of the knuckle about the kingpin axis at ride height: the contact
+    point's over and up (mm/rad), and the toe (rad/rad)."""
+    ride = state.ride
+    lower, upper, wheel, spin = (
+        tuple(float(v) for v in place[:, 0])
+        for place in (ride.lower_ball, ride.upper_ball, ride.wheel_center, ride.spin_axis)
+    )
+    axis = tuple(u - v for u, v in zip(upper, lower, strict=True))
+    arm = tuple(w - v for w, v in zip(wheel, lower, strict=True))
+    size = math.hypot(*axis)
+    level = math.hypot(spin[0], spin[1])
+    if not (size > 0.0 and level > 0.0):
+        return math.nan, math.nan, math.nan
+    ds = [part / size for part in _crossed(axis, spin)]
+    dw = [part / size for part in _crossed(axis, arm)]
+    # The contact lies a radius along u below the wheel center, u = (up - s_z s) / level.
+    radius = float(state.corner.tire_radius[0])
+    level_rate = -spin[2] * ds[2] / level
+    rates = []
+    for k in (1, 2):
+        u = (1.0 if k == 2 else 0.0) - spin[2] * spin[k]
+        du = -(ds[2] * spin[k] + spin[2] * ds[k])
+        rates.append(dw[k] - radius * (du / level - u * level_rate / level**2))
+    return rates[0], rates[1], (ds[0] * spin[1] - spin[0] * ds[1]) / level**2
+
+
+def _crossed(a: tuple[float, ...], b: tuple[float, ...]) -> tuple[float, float, float]:
+    return a[1] * b[2] - a[2] * b[1], a[2] * b[0] - a[0] * b[2], a[0] * b[1] - a[1] * b[0]

@@ -5,10 +5,7 @@ from __future__ import annotations
 import math
 from collections.abc import Iterator
 
-import numpy as np
-
 from geometry import layout as names
-from geometry.corner import space
 from geometry.finding_checks.arms import pivot_names
 from geometry.finding_checks.finding import Finding, Subject
 from geometry.layout import (
@@ -119,20 +116,21 @@ def _units_mixed(subject: Subject) -> Iterator[Finding]:
     )
 
 
-def _distance(p: Point, q: Point) -> float:
-    return math.dist(p, q)
+def _apart(p: Point, q: Point) -> tuple[float, float, float]:
+    return p.over - q.over, p.up - q.up, p.fore - q.fore
 
 
 def _coincident(subject: Subject) -> Iterator[Finding]:
     points, limit = subject.state.side.points, subject.limit("point spacing")
     for first, second in _JOINED:
         if first in points and second in points:
-            gap = _distance(points[first], points[second])
+            gap = math.dist(points[first], points[second])
             if gap < limit:
+                place = "in the same place" if gap < 0.5 else "almost in the same place"
                 yield subject.finding(
                     "points-coincide",
                     "wrong",
-                    f"{subject.name(first)} and {second} are in the same place.",
+                    f"{subject.name(first)} and {second} are {place}.",
                     f"They are {subject.words.fine(gap)} apart; a part joins them, so one of "
                     "them was measured or typed wrong.",
                     figure=gap,
@@ -203,7 +201,7 @@ def _far_from_wheel(subject: Subject) -> Iterator[Finding]:
     for name in KNUCKLE_POINTS:
         # A strut's lower mount is any second point on the strut, so it may stand far up.
         if name in side.points and name != names.STRUT_LOWER:
-            gap = _distance(side[name], center)
+            gap = math.dist(side[name], center)
             if gap > limit:
                 yield subject.finding(
                     "point-far-from-wheel",
@@ -237,14 +235,20 @@ def _wheel_inboard(subject: Subject) -> Iterator[Finding]:
 def _lever(subject: Subject) -> Iterator[Finding]:
     """The tie rod's pull must pass the kingpin axis at a distance, or it can't steer."""
     side = subject.state.side
-    low = space(side[names.LOWER_BALL])
-    axis = space(side[names.STRUT_TOP if side.is_strut else names.UPPER_BALL]) - low
-    rod = space(side[names.TIE_OUTER]) - space(side[names.TIE_INNER])
-    size = float(np.linalg.norm(axis) * np.linalg.norm(rod))
+    lower, inner, outer = (
+        side[name] for name in (names.LOWER_BALL, names.TIE_INNER, names.TIE_OUTER)
+    )
+    axis = _apart(side[names.STRUT_TOP if side.is_strut else names.UPPER_BALL], lower)
+    rod, arm = _apart(outer, inner), _apart(outer, lower)
+    size = math.hypot(*axis) * math.hypot(*rod)
     if size < 1e-9:
         return
-    turning = np.cross(space(side[names.TIE_OUTER]) - low, rod)
-    lever = abs(float(turning @ axis)) / size
+    turning = (
+        arm[1] * rod[2] - arm[2] * rod[1],
+        arm[2] * rod[0] - arm[0] * rod[2],
+        arm[0] * rod[1] - arm[1] * rod[0],
+    )
+    lever = abs(sum(t * a for t, a in zip(turning, axis, strict=True))) / size
     if lever < subject.limit("steering lever"):
         yield subject.finding(
             "tie-rod-no-lever",

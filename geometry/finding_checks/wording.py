@@ -16,6 +16,13 @@ TAPE = {"in": MM_PER_INCH / 16, "mm": 1.0}
 """What a tape resolves, mm."""
 
 
+FINEST = {"in": MM_PER_INCH / 64, "mm": 0.1}
+"""The finest step in which a small size is said, mm."""
+
+FINE_BELOW = MM_PER_INCH / 4
+"""A size below this, mm, is said in the finest step instead of the tape's."""
+
+
 @dataclass(frozen=True)
 class Wording:
     """How one person reads numbers; ``units`` is the layout's."""
@@ -36,11 +43,12 @@ class Wording:
         size = abs(mm)
         if size > FAR:
             return "more than 100 ft" if self.units == "in" else "more than 30 m"
-        if self.units == "mm":
-            return f"{size:.0f} mm" if size >= 9.95 else f"{size:.1f} mm"
-        denominator = 16 if size >= MM_PER_INCH / 4 else 64
-        text = format_length(size, self.units, denominator)
-        return text if text.endswith("in") else f"{text} in"
+        if 0.0 < size < 0.5 * FINEST[self.units]:
+            return "less than 1/64 in" if self.units == "in" else "less than 0.1 mm"
+        small = size < FINE_BELOW
+        return format_length(
+            size, self.units, 64 if small else 16, mark=True, decimals=1 if small else 0
+        )
 
     def signed_tape(self, mm: float) -> str:
         """A place with its sign: below the floor or past the centerline is negative."""
@@ -55,6 +63,13 @@ class Wording:
         size = abs(mm)
         return f"{size / MM_PER_INCH:.3f} in" if self.units == "in" else f"{size:.2f} mm"
 
+    def toe_limit(self, mm: float) -> str:
+        """A toe limit as a tape fraction where it is one, else as ``fine`` has it."""
+        steps = mm / MM_PER_INCH * 64.0
+        if self.units == "in" and steps >= 1.0 and abs(steps - round(steps)) < 1e-6:
+            return self.tape(mm)
+        return self.fine(mm)
+
     def angle(self, rad: float) -> str:
         """Degrees to a tenth, to a hundredth where small; signed."""
         degrees = math.degrees(rad)
@@ -64,9 +79,9 @@ class Wording:
         """Degrees per inch (or 25 mm) of travel; signed."""
         return f"{math.degrees(rad_per_mm) * self.travel_step:.2f}° {self.per_travel}"
 
-    def slope(self, per_mm: float) -> str:
-        """Toe length per inch (or 25 mm) of travel; no sign."""
-        return f"{self.fine(per_mm * self.travel_step)} {self.per_travel}"
+    def slope(self, per_mm: float, toe: str = "") -> str:
+        """Toe length per inch (or 25 mm) of travel; no sign. ``toe`` goes after the length."""
+        return f"{self.fine(per_mm * self.travel_step)}{toe} {self.per_travel}"
 
     def of(self, value: float, kind: Kind) -> str:
         """A figure in its own kind's wording."""
