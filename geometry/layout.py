@@ -274,6 +274,7 @@ class Layout:
 
     def __post_init__(self) -> None:
         object.__setattr__(self, "tolerances", MappingProxyType(dict(self.tolerances)))
+        object.__setattr__(self, "locked", frozenset(self.locked))
 
     @property
     def linked(self) -> bool:

@@ -9,6 +9,7 @@ from __future__ import annotations
 
 import math
 import re
+from decimal import Decimal
 from fractions import Fraction
 
 from geometry.layout import UnitName
@@ -183,15 +184,11 @@ def format_exact(mm: float, unit: UnitName) -> str:
                 return text
         inches = mm / 25.4
         for digits in range(1, 18):
-            text = _digits(inches, digits)
+            text = format(Decimal(f"{inches:.{digits}g}"), "f")
             if parse_length(text, "in") == mm:
                 return text
         return f"{_digits_until(mm, 'mm')} mm"
     return _digits_until(mm, "mm")
-
-
-def _digits(value: float, digits: int) -> str:
-    return _plain(float(f"{value:.{digits}g}"), max(0, digits + 3))
 
 
 def _digits_until(mm: float, unit: UnitName) -> str:

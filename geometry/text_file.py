@@ -1,0 +1,104 @@
+"""Files in and out, safely: reading within limits, writing so that the old file survives."""
+
+from __future__ import annotations
+
+import contextlib
+import os
+import stat
+import tempfile
+from pathlib import Path
+
+
+class TextFileError(ValueError):
+    """A file that can't be read as text; ``faults`` holds the plain sentences."""
+
+    def __init__(self, *faults: str) -> None:
+        super().__init__("\n".join(faults))
+        self.faults = faults
+
+
+def read_text_file(path: Path | str, limit: int) -> str:
+    """The text of an ordinary file of at most ``limit`` bytes, UTF-8 with or without a mark.
+
+    Devices, pipes and folders are refused without being read. Raises TextFileError with a
+    plain sentence, or OSError as the system gives it.
+    """
+    path = Path(path)
+    # Opened without waiting, so that a pipe put in the file's place can't hang the program.
+    descriptor = os.open(
+        path, os.O_RDONLY | getattr(os, "O_NONBLOCK", 0) | getattr(os, "O_BINARY", 0)
+    )
+    with os.fdopen(descriptor, "rb") as file:
+        status = os.fstat(file.fileno())
+        if stat.S_ISDIR(status.st_mode):
+            raise TextFileError("This is a folder, not a file.")
+        if not stat.S_ISREG(status.st_mode):
+            raise TextFileError("This is a device or a pipe, not an ordinary file.")
+        if status.st_size > limit:
+            raise TextFileError(_too_large(limit))
+        data = file.read(limit + 1)
+    if len(data) > limit:
+        raise TextFileError(_too_large(limit))
+    if data.startswith((b"\xff\xfe", b"\xfe\xff")):
+        raise TextFileError("The text is in UTF-16. Save it as UTF-8 and try again.")
+    try:
+        text = data.decode("utf-8-sig")
+    except UnicodeDecodeError as error:
+        line = data.count(b"\n", 0, error.start) + 1
+        raise TextFileError(
+            f"Line {line}: the text is not UTF-8. Save it as UTF-8 and try again."
+        ) from None
+    if "\x00" in text:
+        raise TextFileError("This is not a text file.")
+    return text
+
+
+def _too_large(limit: int) -> str:
+    return f"The file is larger than {limit // 1_000_000} MB; no car's measures are that long."
+
+
+def write_text_file(path: Path | str, text: str) -> None:
+    """Write a file so that the old one stands until the new one is safely on disk.
+
+    A link is followed to the file it names; the old file's permissions are kept. Raises
+    OSError, and then the old file is untouched and nothing is left behind.
+    """
+    target = Path(os.path.realpath(path))
+    if target.exists() and not target.is_file():
+        raise IsADirectoryError(21, "there is a folder or device of that name", str(target))
+    mode: int | None = None
+    with contextlib.suppress(FileNotFoundError):
+        mode = stat.S_IMODE(target.stat().st_mode)
+        if not os.access(target, os.W_OK):
+            raise PermissionError(13, "the file is write-protected", str(target))
+    descriptor, temporary = tempfile.mkstemp(
+        dir=target.parent, prefix=f".{target.name[:100]}.", suffix=".part"
+    )
+    try:
+        with os.fdopen(descriptor, "wb") as file:
+            file.write(text.encode("utf-8"))
+            file.flush()
+            os.fsync(file.fileno())
+        if mode is None:
+            mask = os.umask(0)
+            os.umask(mask)
+            mode = 0o666 & ~mask
+        os.chmod(temporary, mode)
+        os.replace(temporary, target)
+    except BaseException:
+        with contextlib.suppress(OSError):
+            os.unlink(temporary)
+        raise
+    _sync_folder(target.parent)
+
+
+def _sync_folder(folder: Path) -> None:
+    """Make the new name survive a power cut, where the system has a way to."""
+    if os.name != "posix":
+        return
+    with contextlib.suppress(OSError):
+        descriptor = os.open(folder, os.O_RDONLY)
+        try:
+            os.fsync(descriptor)
+        finally:
+            os.close(descriptor)
