@@ -199,9 +199,8 @@ def rack_limits(layout: Layout, travel: float | dict[SideName, float] = 0.0) -> 
     """How far the steering goes each way with the wheels held at ``travel``, mm.
 
     The geometric limit is where a tie rod comes into line with its steering arm (dead
-    center) or a relay rod's arms can no longer follow; it is found to 0.01 mm (near dead
-    center the solve itself gets loose). The rack's own travel is the ``RACK_TRAVEL``
-    tolerance, ``DEFAULT_RACK_TRAVEL`` if not given.
+    center) or a relay rod's arms can no longer follow; it is found to 1e-3 mm. The rack's
+    own travel is the ``RACK_TRAVEL`` tolerance, ``DEFAULT_RACK_TRAVEL`` if not given.
     """
     held: dict[SideName, float] = (
         dict(travel) if isinstance(travel, dict) else {side: float(travel) for side in SIDES}

@@ -70,8 +70,8 @@ def test_the_parts_meet_just_inside_the_limit_and_not_just_outside(end: str) -> 
             for side in ("left", "right")
         )
 
-    assert meets(limit - np.sign(limit) * 0.01)
-    assert not meets(limit + np.sign(limit) * 0.01)
+    assert meets(limit - np.sign(limit) * 1e-3)
+    assert not meets(limit + np.sign(limit) * 1e-3)
 
 
 def test_a_linkage_in_line_still_stands_where_it_was_measured() -> None:
