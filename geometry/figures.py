@@ -25,6 +25,9 @@ PROGRAM = "bobline"
 DEFAULT_SPAN = 75.0
 """Half the travel over which toe ranges are judged, mm."""
 
+_RANGE_STEPS = 601
+"""Poses over the span for a toe range; a peak between two is missed by about 1e-6 deg."""
+
 _ANGLES = ("toe", "camber", "caster", "kingpin_inclination")
 _LENGTHS = ("scrub_radius", "mechanical_trail", "half_track")
 _PIVOT_KEYS = {
@@ -196,16 +199,35 @@ def _carried(
 
 def _tie_rod(state: CornerState, span: float, scale: float) -> dict[str, Any]:
     """The three places for the inner tie-rod pivot and the toe range each leaves."""
-    pivots = state.pivots
-    row: dict[str, Any] = {"side": state.name}
+    inner = state.side[names.TIE_INNER]
+    places: dict[str, tuple[float, float] | None] = {"as_is": (inner.over, inner.up)}
     for kind, key in _PIVOT_KEYS.items():
-        place = pivots.place(kind)
-        row[key] = None if place is None else _place(place[0], place[1], scale)
-    ranges = {kind: pivots.ranges[kind] for kind in ("as is", *_PIVOT_KEYS)}
+        places[key] = state.pivots.place(kind)
+    ranges = toe_ranges(state.side, list(places.values()), span * scale)
+    row: dict[str, Any] = {"side": state.name}
+    for key in _PIVOT_KEYS.values():
+        place = places[key]
+        row[key] = None if place is None else _place(*place, scale)
     row["toe_range"] = {
-        _PIVOT_KEYS.get(kind, "as_is"): None if value is None else math.degrees(value)
-        for kind, value in ranges.items()
+        key: _number(math.degrees(value)) for key, value in zip(places, ranges, strict=True)
     }
     row["travel_range"] = [-span, span]
     return row
 
+
+def toe_ranges(side: Side, places: Sequence[tuple[float, float] | None], span: float) -> Array:
+    """Peak-to-peak toe (k,), rad, over +-``span`` mm for inner tie-rod pivots at k places.
+
+    On the exact motion, the toe free, where the quick sweep behind the best fit takes the
+    wheel's height from the knuckle with its toe held (some thousandths of the range off
+    where the pivot is far from its best spot). NaN where a place or a pose is missing.
+    """
+    points = {name: space(point) for name, point in side.points.items()}
+    fore = points[names.TIE_INNER][0]
+    points[names.TIE_INNER] = np.array(
+        [(fore, *(place or (math.nan, math.nan))) for place in places]
+    ).T
+    batch = Corner(points, side.static_camber, side.static_toe, side.tire.radius)
+    poses = batch.poses(np.linspace(-span, span, _RANGE_STEPS))
+    toe = np.where(poses.assembles, poses.toe, np.nan)
+    return np.asarray(np.max(toe, axis=-1) - np.min(toe, axis=-1))
