@@ -13,7 +13,7 @@ from dataclasses import dataclass, replace
 import numpy as np
 
 from geometry import layout as names
-from geometry.ackermann import SteeredCars, axis_at_height
+from geometry.ackermann import SteeredCars
 from geometry.corner import Corner
 from geometry.inner_pivot import toe_range
 from geometry.layout import SIDES, Layout, LayoutError, Point, RelayRod, Side, SideName, other_side
@@ -108,13 +108,24 @@ class ArmMove:
     toe_followed: Mapping[SideName, float | None]
 
 
+def kingpin_at(side: Side, up: float) -> Point | None:
+    """Where a side's kingpin axis passes a height, as measured; None where the axis lies level."""
+    low = side[names.LOWER_BALL]
+    high = side[names.STRUT_TOP if side.is_strut else names.UPPER_BALL]
+    rise = high.up - low.up
+    if abs(rise) < COINCIDENT_MM:
+        return None
+    share = (up - low.up) / rise
+    return Point(
+        low.over + share * (high.over - low.over), up, low.fore + share * (high.fore - low.fore)
+    )
+
+
 def arm_shape(side: Side) -> ArmShape | None:
     """A side's steering arm from its measured points; None where the kingpin lies level."""
     end = side[names.TIE_OUTER]
-    axis = axis_at_height(Corner.of(side).poses(0.0), end.up)[:, 0]
-    if not bool(np.all(np.isfinite(axis))):
-        return None
-    return ArmShape(Point(float(axis[1]), end.up, float(axis[0])), end)
+    axis = kingpin_at(side, end.up)
+    return None if axis is None else ArmShape(axis, end)
 
 
 def string_check(layout: Layout, side: SideName) -> StringCheck | None:
@@ -314,10 +325,10 @@ def swapped_knuckles(layout: Layout) -> Layout:
 
     A knuckle turned around about its kingpin keeps its arm's lean out- or inboard and has
     it ahead instead of behind (or the other way about): the outer tie-rod end's fore is
-    mirrored at the kingpin axis at its height. The inner tie-rod ends go as far ahead of
-    the axis as they were behind it, with the whole relay rod if there is one. Everything
-    else stays, and the rack then has to move the other way for the same turn. LayoutError
-    where a kingpin axis lies level.
+    mirrored at the kingpin axis at its height. The rack, or the relay rod with its arms,
+    goes as far ahead of the axes as it was behind them (their mean, if they differ).
+    Everything else stays, and the rack then has to move the other way for the same turn.
+    LayoutError where a kingpin axis lies level.
     """
     shapes = {side: arm_shape(layout.side(side)) for side in SIDES}
     new: dict[SideName, Side] = {}
@@ -325,29 +336,27 @@ def swapped_knuckles(layout: Layout) -> Layout:
     for side in SIDES:
         own, other = layout.side(side), layout.side(other_side(side))
         here, there = shapes[side], shapes[other_side(side)]
-        if here is None or there is None:
+        up = other[names.TIE_OUTER].up + own[names.LOWER_BALL].up - other[names.LOWER_BALL].up
+        axis = kingpin_at(own, up)
+        if here is None or there is None or axis is None:
             raise LayoutError("A kingpin axis that lies level has no arm ahead or behind it.")
-        up = own[names.LOWER_BALL].up + there.end.up - other[names.LOWER_BALL].up
-        axis = axis_at_height(Corner.of(own).poses(0.0), up)[:, 0]
         end = Point(
-            float(axis[1]) + there.end.over - there.kingpin.over,
+            axis.over + there.end.over - there.kingpin.over,
             up,
-            float(axis[0]) - (there.end.fore - there.kingpin.fore),
+            axis.fore - (there.end.fore - there.kingpin.fore),
         )
-        inner = own[names.TIE_INNER]
-        shifts.append(2.0 * (here.kingpin.fore - inner.fore))
+        shifts.append(2.0 * (here.kingpin.fore - own[names.TIE_INNER].fore))
         new[side] = own.moved(names.TIE_OUTER, end)
-    if isinstance(layout.steering, RelayRod):
-        # The relay rod is one piece: it and both inner ends go together.
-        shifts = [float(np.mean(shifts))] * len(shifts)
-    for side, shift in zip(SIDES, shifts, strict=True):
+    # A rack or a relay rod is one piece: both inner ends go together.
+    shift = float(np.mean(shifts))
+    for side in SIDES:
         inner = new[side][names.TIE_INNER]
         new[side] = new[side].moved(names.TIE_INNER, inner._replace(fore=inner.fore + shift))
     steering = layout.steering
     if isinstance(steering, RelayRod):
         for name in names.RELAY_POINTS:
             point = steering[name]
-            steering = steering.moved(name, point._replace(fore=point.fore + shifts[0]))
+            steering = steering.moved(name, point._replace(fore=point.fore + shift))
     return replace(
         layout,
         left=new["left"],
