@@ -19,6 +19,10 @@ from geometry.solution import Solution
 __all__ = ["SEVERITIES", "Cure", "Finding", "Move", "Severity", "findings"]
 
 
+HOPELESS = ("units-mixed", "does-not-assemble")
+"""Slips that leave nothing else on their side worth judging."""
+
+
 def findings(solution: Solution) -> tuple[Finding, ...]:
     """Every finding on a solved car, worst first.
 
@@ -35,17 +39,22 @@ def _all(solution: Solution) -> Iterator[Finding]:
     left, right = (Subject(solution, solution.sides[name], name, words) for name in SIDES)
     linked = solution.layout.linked
     subjects = (Subject(solution, solution.left, None, words),) if linked else (left, right)
+    judged = []
     for subject in subjects:
-        yield from sanity.check(subject)
+        slips = list(sanity.check(subject))
+        yield from slips
+        if not any(slip.code in HOPELESS for slip in slips):
+            judged.append(subject)
     if not linked:
         yield from sanity.sides_differ(left, right)
     # A steered or one-wheel pose is not the same on both sides even while they are linked.
     same_pose = linked and solution.left.now is solution.right.now
     for subject in subjects if same_pose else (left, right):
         yield from reach.check(subject)
-    for subject in subjects:
+    for subject in judged:
         yield from pivot.check(subject)
         yield from arms.check(subject)
-    yield from roll.check(subjects)
+    if len(judged) == len(subjects):
+        yield from roll.check(subjects)
     yield from steering.check(subjects[0])
     yield from targets.check(subjects)

@@ -17,8 +17,9 @@ from geometry.layout import MM_PER_INCH, Layout, Side, SideName
 from geometry.linkage import Array
 from geometry.solution import CornerState, Solution
 
-Kind = Literal["length", "angle", "rate", "slope"]
-"""length mm; angle rad; rate rad per mm of travel; slope mm per mm of travel."""
+Kind = Literal["length", "toe", "angle", "rate", "slope"]
+"""length mm; toe mm at the tire; angle rad; rate rad per mm of travel; slope mm of toe per
+mm of travel."""
 
 PRACTICE = "common practice, no source"
 CHOSEN = "this program's own choice, no source"
@@ -30,35 +31,41 @@ _DEG_PER_INCH = _DEG / MM_PER_INCH
 
 @dataclass(frozen=True)
 class Tolerance:
-    """One named limit: its value in internal units, what it limits and where it comes from."""
+    """One named limit: its value in internal units, what it limits and where it comes from.
+
+    ``bound`` says which way it limits.
+    """
 
     key: str
     value: float
     kind: Kind
     label: str
     source: str
+    bound: Literal["at most", "at least"] = "at most"
 
 
 _TABLE = (
     # Toe through travel.
-    Tolerance("toe range", MM_PER_INCH / 16, "length",
+    Tolerance("toe range", MM_PER_INCH / 16, "toe",
               "Toe change over the chosen travel, per wheel", PRACTICE),
-    Tolerance("toe range wrong", MM_PER_INCH / 4, "length",
+    Tolerance("toe range wrong", MM_PER_INCH / 4, "toe",
               "Toe change over the chosen travel counted as wrong, per wheel", CHOSEN),
     Tolerance("toe rate", 0.015, "slope",
               "Toe change per travel at ride height, per wheel", PRACTICE),
     # Arms and camber.
     Tolerance("lower arm slope", 8.0 * _DEG, "angle",
               "Lower arm's slope at ride height", CHOSEN),
-    Tolerance("camber gain low", 0.5 * _DEG_PER_INCH, "rate", "Least camber gain", PRACTICE),
+    Tolerance("camber gain low", 0.5 * _DEG_PER_INCH, "rate", "Least camber gain", PRACTICE,
+              "at least"),
     Tolerance("camber gain high", 1.0 * _DEG_PER_INCH, "rate", "Most camber gain", PRACTICE),
     Tolerance("camber loss", 0.1 * _DEG, "angle",
               "Camber lost toward top-out over the chosen bump", CHOSEN),
-    Tolerance("swing arm short", 40.0 * MM_PER_INCH, "length", "Shortest swing arm", CHOSEN),
+    Tolerance("swing arm short", 40.0 * MM_PER_INCH, "length", "Shortest swing arm", CHOSEN,
+              "at least"),
     Tolerance("scrub radius", 3.0 * MM_PER_INCH, "length",
               "Largest scrub radius, either way", CHOSEN),
     # Roll center.
-    Tolerance("roll center low", 0.0, "length", "Lowest roll center", PRACTICE),
+    Tolerance("roll center low", 0.0, "length", "Lowest roll center", PRACTICE, "at least"),
     Tolerance("roll center high", 3.0 * MM_PER_INCH, "length", "Highest roll center", PRACTICE),
     # A tape measure tells a sixteenth; a difference below that can't be measured.
     Tolerance("roll center path", MM_PER_INCH / 16, "length",
@@ -66,15 +73,17 @@ _TABLE = (
     # Steering.
     Tolerance("relay difference", 1.5, "length",
               "Difference between pitman and idler arm, length or height", CHOSEN),
-    Tolerance("relay toe", MM_PER_INCH / 16, "length",
+    Tolerance("relay toe", MM_PER_INCH / 16, "toe",
               "Total toe change from unequal pitman and idler arms", CHOSEN),
     Tolerance("rack travel", 75.0, "length", "Rack travel each way", PRACTICE),
     # Measuring slips.
-    Tolerance("point spacing", 3.0, "length", "Least distance between two joined pivots", CHOSEN),
+    Tolerance("point spacing", 3.0, "length", "Least distance between two joined pivots", CHOSEN,
+              "at least"),
     Tolerance("toggle angle", 10.0 * _DEG, "angle",
-              "Least angle between an arm and the line through the ball joints", CHOSEN),
+              "Least angle between an arm and the line through the ball joints", CHOSEN,
+              "at least"),
     Tolerance("steering lever", MM_PER_INCH, "length",
-              "Least lever of the tie rod about the kingpin axis", CHOSEN),
+              "Least lever of the tie rod about the kingpin axis", CHOSEN, "at least"),
     Tolerance("knuckle reach", 24.0 * MM_PER_INCH, "length",
               "Farthest knuckle point from the wheel center", CHOSEN),
     Tolerance("tire gap", MM_PER_INCH / 4, "length", "Tire off the floor at ride height", CHOSEN),
@@ -195,7 +204,7 @@ _FIGURES = (
            lambda solution, side: camber_gain(solution.sides[side])),
     Figure("swing arm", "Swing arm", "length", True,
            lambda solution, side: swing_arm(solution.sides[side])),
-    Figure("toe range", "Toe change over the chosen travel", "length", True, _toe_range),
+    Figure("toe range", "Toe change over the chosen travel", "toe", True, _toe_range),
     Figure("scrub radius", "Scrub radius", "length", True, _ride("scrub_radius")),
     Figure("mechanical trail", "Mechanical trail", "length", True, _ride("mechanical_trail")),
     Figure("caster", "Caster", "angle", True, _ride("caster")),

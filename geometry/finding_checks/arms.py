@@ -9,12 +9,15 @@ from typing import Literal
 import numpy as np
 
 from geometry import layout as names
-from geometry.finding_checks.finding import Cure, Finding, Move, Subject
+from geometry.finding_checks.finding import Cure, Finding, Subject
 from geometry.layout import Side
 from geometry.linkage import Array
 from geometry.tolerances import camber_gain, lower_arm_slope
 
 ArmName = Literal["lower", "upper"]
+
+LARGEST_MOVE = 300.0
+"""A pivot's move beyond this, mm, is no cure that a shop could make."""
 
 
 def pivot_names(side: Side, arm: ArmName) -> tuple[str, ...]:
@@ -62,7 +65,7 @@ def rise_to_aim(subject: Subject, arm: ArmName, target: Array) -> float | None:
     if change == 0.0:
         return None
     rise = sum(n * v for n, v in zip(normal, way, strict=True)) / change
-    return rise if math.isfinite(rise) and abs(rise) < 1e4 else None
+    return rise if math.isfinite(rise) and abs(rise) <= LARGEST_MOVE else None
 
 
 def check(subject: Subject) -> Iterator[Finding]:
@@ -123,7 +126,7 @@ def _gain_cure(subject: Subject, gain: float) -> Cure | None:
     verb = "Raise" if rise > 0.0 else "Lower"
     return Cure(
         f"{verb} the {arm} inner pivot{'s' if len(pivots) > 1 else ''} {words.tape(rise)} for "
-        f"{words.rate(gain)} of camber gain.",
+        f"{words.rate(gain, ' of camber gain')}.",
         tuple(subject.move(name, up=rise) for name in pivots),
     )
 
@@ -154,9 +157,9 @@ def _camber(subject: Subject, gain: float) -> Iterator[Finding]:
             "instant-center-outboard",
             "warn",
             f"{subject.name('instant center')} is on the wrong side, {words.tape(arm)} outboard "
-            f"of the tire: the wheel leans its top out {words.rate(-gain)} in bump.",
+            f"of the tire: the wheel leans its top out {words.rate(-gain)}.",
             "The arm lines should meet inboard, so that the tire leans in as the car rolls on it. "
-            f"Wanted: {words.rate(low)} of camber gain at least.",
+            f"Wanted: {words.rate(low, ' of camber gain')} at least.",
             figure=gain,
             kind="rate",
             key="camber gain low",
@@ -227,7 +230,6 @@ def _scrub(subject: Subject) -> Iterator[Finding]:
         return
     words = subject.words
     move = math.copysign(limit, scrub) - scrub
-    moves: tuple[Move, ...] = (subject.move(names.WHEEL_CENTER, over=move),)
     where = "outboard" if scrub > 0.0 else "inboard"
     toward = "inboard" if move < 0.0 else "outboard"
     yield subject.finding(
@@ -239,7 +241,10 @@ def _scrub(subject: Subject) -> Iterator[Finding]:
         figure=scrub,
         key="scrub radius",
         cure=Cure(
-            f"Set the wheel {words.tape(move)} farther {toward} (wheel offset or spacer).", moves
-        ),
+            f"Set the wheel {words.tape(move)} farther {toward} (wheel offset or spacer).",
+            (subject.move(names.WHEEL_CENTER, over=move),),
+        )
+        if abs(move) <= LARGEST_MOVE
+        else None,
         points=(names.WHEEL_CENTER, names.LOWER_BALL),
     )

@@ -9,7 +9,7 @@ from typing import Literal
 from geometry.finding_checks.wording import Wording
 from geometry.layout import Layout, Point, SideName
 from geometry.solution import CornerState, Solution
-from geometry.tolerances import Kind, tolerance, tolerance_source
+from geometry.tolerances import TOLERANCES, Kind, tolerance, tolerance_source
 
 Severity = Literal["wrong", "warn", "note"]
 SEVERITIES: tuple[Severity, ...] = ("wrong", "warn", "note")
@@ -112,7 +112,6 @@ class Subject:
         figure: float | None = None,
         kind: Kind = "length",
         key: str = "",
-        shown_limit: str = "",
         cure: Cure | None = None,
         points: Iterable[str] = (),
         whole_car: bool = False,
@@ -120,7 +119,8 @@ class Subject:
         """A finding on this side; with a ``key``, the tolerance closes the detail."""
         value, source = (self.limit(key), self.source(key)) if key else (None, "")
         if value is not None:
-            said = shown_limit or self.words.of(value, kind)
+            entry = TOLERANCES[key]
+            said = f"{entry.bound} {self.words.of(value, entry.kind)}"
             detail = f"{detail} Tolerance: {said} ({source}).".strip()
         return Finding(
             code,

@@ -11,9 +11,12 @@ from geometry import layout as names
 from geometry.finding_checks.finding import Cure, Finding, Severity, Subject
 from geometry.finding_checks.wording import TAPE
 from geometry.inner_pivot import toe_of
-from geometry.layout import Rack
+from geometry.layout import MM_PER_INCH, Rack
 from geometry.linkage import Array
 from geometry.tolerances import toe_length
+
+TOE_SHOWN = {"in": MM_PER_INCH / 1000, "mm": 0.01}
+"""The finest toe that is said, mm."""
 
 ALREADY_BEST = 0.9
 """A best fit that leaves more than this share of the present toe change cures nothing."""
@@ -46,15 +49,17 @@ def _first_bump(subject: Subject, lengths: Array) -> str:
     where = "the first inch" if words.units == "in" else "the first 25 mm"
     if step < words.travel_step:
         where = f"the first {words.tape(step)}"
-    return f"{_toe_words(subject, float(end - start))} in {where} of bump"
+    gained = float(end - start)
+    if abs(gained) < 0.5 * TOE_SHOWN[words.units]:
+        return f"no toe change in {where} of bump"
+    return f"{_toe_words(subject, gained)} in {where} of bump"
 
 
 def _off_its_spot(subject: Subject, lengths: Array, total: float) -> Finding:
     state, words, pivots = subject.state, subject.words, subject.state.pivots
     severity: Severity = "wrong" if total > subject.limit("toe range wrong") else "warn"
     span = words.span(subject.solution.span)
-    detail = f"Toe at this wheel changes {words.fine(total)} in all over {span}, rack centered."
-    limit = f"{words.toe_limit(subject.limit('toe range'))} per wheel over the chosen travel"
+    detail = f"Toe at this wheel changes {words.fine(total)} in all over {span}, steering centered."
     points = (names.TIE_INNER, names.TIE_OUTER)
     first = _first_bump(subject, lengths)
     best, left = pivots.place("best fit"), pivots.ranges["best fit"]
@@ -67,8 +72,8 @@ def _off_its_spot(subject: Subject, lengths: Array, total: float) -> Finding:
             "the inner tie-rod pivot makes it much better.",
             f"{detail} Look at the steering arm's end and at the arms.",
             figure=total,
+            kind="toe",
             key="toe range",
-            shown_limit=limit,
             points=points,
         )
     present = state.side[names.TIE_INNER]
@@ -86,8 +91,8 @@ def _off_its_spot(subject: Subject, lengths: Array, total: float) -> Finding:
         f"spot: {first}.",
         detail,
         figure=total,
+        kind="toe",
         key="toe range",
-        shown_limit=limit,
         cure=Cure(_cure_text(subject, over, up), (subject.move(names.TIE_INNER, over, up),)),
         points=points,
     )
@@ -147,8 +152,7 @@ def _aim(subject: Subject, lengths: Array, severity: Severity) -> Iterator[Findi
     if math.isfinite(up) and words.counts(up):
         verb = "Raise" if up > 0.0 else "Lower"
         cure = Cure(
-            f"{verb} its inner end {words.tape(up)} to aim it, or move the other end the other "
-            "way.",
+            f"{verb} its inner end {words.tape(up)} to aim it.",
             (subject.move(names.TIE_INNER, up=up),),
         )
     yield subject.finding(

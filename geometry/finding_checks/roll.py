@@ -9,7 +9,7 @@ import numpy as np
 
 from geometry.finding_checks.arms import ArmName, arm_points, pivot_names, rise_to_aim
 from geometry.finding_checks.finding import Cure, Finding, Move, Subject
-from geometry.linkage import PARALLEL_SINE, line_through, meeting
+from geometry.linkage import COINCIDENT_MM, PARALLEL_SINE, line_through, meeting
 from geometry.solution import CornerState, Solution
 
 LOWER_ONLY: tuple[ArmName, ...] = ("lower",)
@@ -40,14 +40,15 @@ def check(subjects: tuple[Subject, ...]) -> Iterator[Finding]:
         return
     low, high = first.limit("roll center low"), first.limit("roll center high")
     up, words = center[1], first.words
-    if up < low or up > high:
+    # Parallel level arms have theirs on the floor, give or take the arithmetic.
+    if up < low - COINCIDENT_MM or up > high + COINCIDENT_MM:
         wanted = low + INSIDE * (high - low) if up < low else high - INSIDE * (high - low)
         under = "below the floor" if up < 0.0 else "above the floor"
         yield first.finding(
             "roll-center-low" if up < low else "roll-center-high",
             "warn",
             f"Roll center is {words.tape(up)} {under}, too {'low' if up < low else 'high'}.",
-            f"Usual: {words.signed_tape(low)} to {words.signed_tape(high)} above the floor. "
+            f"Wanted: {words.signed_tape(low)} to {words.signed_tape(high)} above the floor. "
             "Moving an arm moves the tie rod's best spot as well: set the rack after it.",
             figure=up,
             key="roll center low" if up < low else "roll center high",

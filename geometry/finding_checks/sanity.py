@@ -77,6 +77,7 @@ def sides_differ(left: Subject, right: Subject) -> Iterator[Finding]:
     words, worst = left.words, differing[0]
     others = f", and {len(differing) - 1} more" if len(differing) > 1 else ""
     listed = "; ".join(f"{name} {words.tape(apart[name])}" for name in differing)
+    listed = listed[0].upper() + listed[1:]
     yield left.finding(
         "sides-differ",
         "warn",
@@ -147,8 +148,8 @@ def _does_not_assemble(subject: Subject) -> Iterator[Finding]:
     yield subject.finding(
         "does-not-assemble",
         "wrong",
-        f"{subject.name('points')} do not make a front end that can move: nothing can be "
-        "figured from them.",
+        f"The {'' if subject.side is None else f'{subject.side} '}points do not make a front end "
+        "that can move: nothing can be figured from them.",
         "Two joined pivots may be in one place, an arm may stand straight up or in line with "
         "the ball joints, or the tie rod may have no lever on the knuckle.",
         points=(names.LOWER_BALL, names.TIE_OUTER),

@@ -41,22 +41,23 @@ def check(subject: Subject) -> Iterator[Finding]:
         if abs(size) > limit
     ]
     worst = _toe_difference(subject, relay)
-    severity = (
-        "warn" if worst is None or abs(worst) > subject.limit("relay toe") else "note"
-    )
     step = words.tape(MM_PER_INCH)
-    caused = (
-        f"the wheels toe {'in' if worst > 0.0 else 'out'} {words.fine(worst)} between them with "
-        f"the relay rod {step} to one side"
-        if worst is not None
-        else f"the arms can't follow {step} to each side"
-    )
+    if worst is None:
+        caused = f"the arms can't follow {step} to each side"
+    elif abs(worst) < 0.005:
+        caused = f"no toe comes of it with the relay rod {step} to either side"
+    else:
+        caused = (
+            f"the wheels toe {'in' if worst > 0.0 else 'out'} {words.fine(worst)} between them "
+            f"with the relay rod {step} to one side"
+        )
     yield subject.finding(
         "relay-arms-unequal",
-        "warn" if severity == "warn" else "note",
+        "warn" if worst is None or abs(worst) > subject.limit("relay toe") else "note",
         f"Idler arm is {' and '.join(parts)} than the pitman arm: {caused}.",
         "Compared with an idler arm that matches the pitman arm.",
         figure=worst,
+        kind="toe",
         key="relay toe",
         cure=_matching(relay),
         points=names.RELAY_POINTS,

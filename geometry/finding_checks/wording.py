@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import math
 from dataclasses import dataclass
+from functools import lru_cache
 
 from geometry.layout import MM_PER_INCH, UnitName
 from geometry.lengths import format_length
@@ -20,7 +21,7 @@ FINEST = {"in": MM_PER_INCH / 64, "mm": 0.1}
 """The finest step in which a small size is said, mm."""
 
 FINE_BELOW = MM_PER_INCH / 4
-"""A size below this, mm, is said in the finest step instead of the tape's."""
+"""A size below this, mm, is said in finer steps than the tape's."""
 
 
 @dataclass(frozen=True)
@@ -40,18 +41,12 @@ class Wording:
 
     def tape(self, mm: float) -> str:
         """A size to the tape's sixteenth (or millimeter), finer where it is small; no sign."""
-        size = abs(mm)
-        if size > FAR:
-            return "more than 100 ft" if self.units == "in" else "more than 30 m"
-        if 0.0 < size < 0.5 * FINEST[self.units]:
-            return "less than 1/64 in" if self.units == "in" else "less than 0.1 mm"
-        small = size < FINE_BELOW
-        return format_length(
-            size, self.units, 64 if small else 16, mark=True, decimals=1 if small else 0
-        )
+        return _tape(abs(mm), self.units)
 
     def signed_tape(self, mm: float) -> str:
         """A place with its sign: below the floor or past the centerline is negative."""
+        if abs(mm) < 0.5 * FINEST[self.units]:
+            return f"0 {self.units}"
         return f"-{self.tape(mm)}" if mm < 0.0 else self.tape(mm)
 
     def counts(self, mm: float) -> bool:
@@ -61,10 +56,12 @@ class Wording:
     def fine(self, mm: float) -> str:
         """A toe length in thousandths of an inch or hundredths of a millimeter; no sign."""
         size = abs(mm)
+        if size > FAR:
+            return self.tape(mm)
         return f"{size / MM_PER_INCH:.3f} in" if self.units == "in" else f"{size:.2f} mm"
 
-    def toe_limit(self, mm: float) -> str:
-        """A toe limit as a tape fraction where it is one, else as ``fine`` has it."""
+    def toe(self, mm: float) -> str:
+        """A toe limit or figure: a tape fraction where it is just that, else thousandths."""
         steps = mm / MM_PER_INCH * 64.0
         if self.units == "in" and steps >= 1.0 and abs(steps - round(steps)) < 1e-6:
             return self.tape(mm)
@@ -75,9 +72,9 @@ class Wording:
         degrees = math.degrees(rad)
         return f"{degrees:.1f}°" if abs(degrees) >= 1.0 else f"{degrees:.2f}°"
 
-    def rate(self, rad_per_mm: float) -> str:
-        """Degrees per inch (or 25 mm) of travel; signed."""
-        return f"{math.degrees(rad_per_mm) * self.travel_step:.2f}° {self.per_travel}"
+    def rate(self, rad_per_mm: float, of: str = "") -> str:
+        """Degrees per inch (or 25 mm) of travel; signed. ``of`` goes after the degrees."""
+        return f"{math.degrees(rad_per_mm) * self.travel_step + 0.0:.2f}°{of} {self.per_travel}"
 
     def slope(self, per_mm: float, toe: str = "") -> str:
         """Toe length per inch (or 25 mm) of travel; no sign. ``toe`` goes after the length."""
@@ -87,6 +84,8 @@ class Wording:
         """A figure in its own kind's wording."""
         if kind == "length":
             return self.signed_tape(value)
+        if kind == "toe":
+            return self.toe(value)
         if kind == "angle":
             return self.angle(value)
         return self.rate(value) if kind == "rate" else self.slope(value)
@@ -94,3 +93,15 @@ class Wording:
     def span(self, mm: float) -> str:
         """The chosen travel both ways, as words."""
         return f"{self.tape(mm)} of bump and {self.tape(mm)} of droop"
+
+
+# The same limits and spans are said in every frame of a drag.
+@lru_cache(maxsize=256)
+def _tape(size: float, units: UnitName) -> str:
+    if size > FAR:
+        return "more than 100 ft" if units == "in" else "more than 30 m"
+    if 0.0 < size < 0.5 * FINEST[units]:
+        return "less than 1/64 in" if units == "in" else "less than 0.1 mm"
+    small = size < FINE_BELOW
+    denominator = (64 if size < 0.25 * FINE_BELOW else 32) if small else 16
+    return format_length(size, units, denominator, mark=True, decimals=1 if small else 0)

@@ -6,6 +6,7 @@ import math
 import re
 from typing import Any
 
+import pytest
 from hypothesis import HealthCheck, given, settings
 from hypothesis import strategies as st
 
@@ -14,6 +15,7 @@ from geometry.findings import SEVERITIES, findings
 from geometry.layout import Layout, Point, Rack, RelayRod, Side, Target, Tire
 from geometry.solution import solve
 from geometry.tolerances import FIGURES, TOLERANCES
+from tests.sample_cars import CARS, DEGENERATE
 
 # A few round values again and again, so that points coincide, line up and run parallel.
 coordinate = st.one_of(
@@ -95,6 +97,19 @@ def layouts(draw: st.DrawFn) -> Layout:
 def test_findings_survive_any_layout(
     layout: Layout, travel: float, rack: float, span: float
 ) -> None:
+    speaks_plainly(layout, travel, rack, span)
+
+
+@pytest.mark.parametrize("name", [*CARS, *DEGENERATE])
+@pytest.mark.parametrize(("travel", "rack"), [(0.0, 0.0), (60.0, 20.0), (-300.0, -200.0)])
+def test_findings_survive_every_sample_car(name: str, travel: float, rack: float) -> None:
+    layout = {**CARS, **DEGENERATE}[name]
+    for one in (layout, layout.unlinked()):
+        speaks_plainly(one, travel, rack, 75.0)
+
+
+def speaks_plainly(layout: Layout, travel: float, rack: float, span: float) -> None:
+    """Every finding reads as words with finite numbers, and its cure can be made."""
     # Warnings are errors in this suite, so numpy's would fail it too.
     for finding in findings(solve(layout, travel, rack, span)):
         said = f"{finding.text} {finding.detail}"
