@@ -23,12 +23,12 @@ RACK_TRAVEL = "rack travel"
 DEFAULT_RACK_TRAVEL = 75.0
 """A rack's travel each way where the layout doesn't say, mm (common practice, no source)."""
 
-RACK_SEARCH = 400.0
+RACK_SEARCH = 250.0
 """How far a geometric limit is looked for, mm; no steering goes there."""
 
 _SEARCH_STEP = 5.0
-_SEARCH_ROUNDS = 4
-_SEARCH_SHARES = 31
+_SEARCH_ROUNDS = 3
+_SEARCH_SHARES = 41
 
 
 @dataclass(frozen=True)
@@ -79,17 +79,28 @@ def _in_car(relay: RelayRod, name: str) -> Array:
     return space(relay[name]) * car_axes(relay.side_of(name))[:, 0]
 
 
+def relay_ends(relay: RelayRod, rack: Array | float) -> tuple[Array, Array]:
+    """Where the pitman and the idler arm's ends stand (3, n), mm in the car's axes.
+
+    One for each rack place (n,); NaN where the arms can't follow.
+    """
+    rack = np.atleast_1d(np.asarray(rack, dtype=float))
+    pitman, pitman_pivot = _in_car(relay, names.PITMAN_END), _in_car(relay, names.PITMAN_PIVOT)
+    idler, idler_pivot = _in_car(relay, names.IDLER_END), _in_car(relay, names.IDLER_PIVOT)
+    with np.errstate(all="ignore"):
+        pitman_now = _turned_to(pitman, pitman_pivot, pitman[1] + rack)
+        return pitman_now, _follow(idler, idler_pivot, pitman, pitman_now)
+
+
 def _relay_shifts(layout: Layout, relay: RelayRod, rack: Array) -> dict[SideName, Array]:
     """Pitman and idler arms turn about vertical axes; the relay rod joins their ends.
 
     The rod is taken not to roll about its own length, so its inner ends keep their height
     beside it.
     """
-    pitman, pitman_pivot = _in_car(relay, names.PITMAN_END), _in_car(relay, names.PITMAN_PIVOT)
-    idler, idler_pivot = _in_car(relay, names.IDLER_END), _in_car(relay, names.IDLER_PIVOT)
+    pitman, idler = _in_car(relay, names.PITMAN_END), _in_car(relay, names.IDLER_END)
+    pitman_now, idler_now = relay_ends(relay, rack)
     with np.errstate(all="ignore"):
-        pitman_now = _turned_to(pitman, pitman_pivot, pitman[1] + rack)
-        idler_now = _follow(idler, idler_pivot, pitman, pitman_now)
         ride, now = _rod_frame(pitman, idler), _rod_frame(pitman_now, idler_now)
         out: dict[SideName, Array] = {}
         for side in SIDES:

@@ -1,0 +1,55 @@
+"""From outlines in mm to painter paths, and pens made once."""
+
+from __future__ import annotations
+
+from collections.abc import Iterable, Sequence
+
+import numpy as np
+from pyqtgraph import arrayToQPath
+from PySide6.QtCore import Qt
+from PySide6.QtGui import QBrush, QColor, QPainterPath, QPen
+
+from geometry.linkage import Array
+
+NO_PEN = QPen(Qt.PenStyle.NoPen)
+NO_BRUSH = QBrush(Qt.BrushStyle.NoBrush)
+
+
+def pen(
+    color: str, width: float, dash: Sequence[float] = (), *, cosmetic: bool = True
+) -> QPen:
+    """A pen in pixels (or mm, not cosmetic); dash lengths in pen widths."""
+    made = QPen(QColor(color), width)
+    made.setCosmetic(cosmetic)
+    made.setJoinStyle(Qt.PenJoinStyle.RoundJoin)
+    made.setCapStyle(Qt.PenCapStyle.FlatCap if dash else Qt.PenCapStyle.RoundCap)
+    if dash:
+        made.setDashPattern(list(dash))
+    return made
+
+
+def brush(color: str | None) -> QBrush:
+    return NO_BRUSH if color is None else QBrush(QColor(color))
+
+
+def path_of(outlines: Iterable[Array], closed: bool) -> QPainterPath:
+    """One path of many outlines (n, 2), filled as one piece where they overlap."""
+    rows: list[Array] = []
+    joined: list[Array] = []
+    for outline in outlines:
+        line = np.vstack([outline, outline[:1]]) if closed else outline
+        join = np.ones(len(line), dtype=np.int32)
+        join[-1] = 0
+        rows.append(line)
+        joined.append(join)
+    if not rows:
+        return QPainterPath()
+    points = np.concatenate(rows)
+    path = arrayToQPath(
+        np.ascontiguousarray(points[:, 0]),
+        np.ascontiguousarray(points[:, 1]),
+        connect=np.concatenate(joined),
+        finiteCheck=False,
+    )
+    path.setFillRule(Qt.FillRule.WindingFill)
+    return path
