@@ -43,8 +43,9 @@ _QUANTITY = re.compile(
     rf"\s*(?:(?P<whole>{_NUMBER})(?:\s+|\s*-\s*)(?P<top2>\d+)\s*/\s*(?P<bottom2>\d+)"
     rf"|(?P<top>\d+)\s*/\s*(?P<bottom>\d+)"
     rf"|(?P<decimal>{_NUMBER}))"
-    r"\s*(?P<unit>\"|'|[a-zA-Z]+\.?)?"
+    r"\s*(?P<unit>\"|'|[a-zA-Z]+\.?)?\s*"
 )
+_THOUSANDS = re.compile(r"[1-9]\d{0,2},\d{3}")
 
 
 class LengthTextError(ValueError):
@@ -59,42 +60,52 @@ def _decimal(text: str) -> Fraction:
     return Fraction("0" + text.replace(",", ".") + ("0" if text[-1] in ".," else ""))
 
 
-def parse_length(text: str, unit: UnitName) -> float:
+def parse_length(text: str, unit: UnitName, *, decimal_comma: bool = False) -> float:
     """The length, mm, that ``text`` says, read in ``unit`` unless it has its own marks.
 
-    Raises LengthTextError with a plain reason.
+    A comma is a decimal comma; only millimeters such as ``2,743``, which could as well be
+    thousands, are refused unless ``decimal_comma`` says what is meant. Raises
+    LengthTextError with a plain reason.
     """
     shown = text.strip()
     if len(shown) > 60:
         raise LengthTextError("Can't read this: it is too long for a length.")
-    rest = shown
-    for mark, plain in _MARKS.items():
-        rest = rest.replace(mark, plain)
-    rest = rest.strip()
-    if not rest:
+    if not shown:
         raise LengthTextError("Nothing was typed. A length such as 9 1/16 or 230 mm was expected.")
-    sign = 1
-    if rest[0] in "+-":
-        sign, rest = (-1 if rest[0] == "-" else 1), rest[1:].strip()
-    total = Fraction(0)
-    last_unit: Fraction | None = None
-    while rest:
-        match = _QUANTITY.match(rest)
-        if match is None or (last_unit is not None and match["unit"] is None and len(rest) == 0):
-            raise _unreadable(shown)
-        scale = _scale(match["unit"], unit, last_unit, shown)
-        if last_unit is not None and scale >= last_unit:
-            raise _unreadable(shown)
-        total += _amount(match, shown) * scale
-        last_unit = scale
-        rest = rest[match.end():].strip()
+    sign, rest = _sign(_plain_marks(shown))
+    match = _QUANTITY.match(rest)
+    if match is None:
+        raise _unreadable(shown)
+    scale = _scale(match["unit"], unit, None, shown)
+    if not decimal_comma and scale in (1, 10) and _THOUSANDS.fullmatch(match["decimal"] or ""):
+        point, none = match["decimal"].replace(",", "."), match["decimal"].replace(",", "")
+        raise LengthTextError(f"Can't tell whether “{shown}” means {point} or {none}. Type either.")
+    total = _amount(match, shown) * scale
+    rest = rest[match.end() :].strip()
+    if rest and scale == _UNIT_MM["ft"]:
         # Between feet and inches a dash may stand, as on a drawing: 1'-2 1/2".
-        if rest.startswith("-") and scale == _UNIT_MM["ft"]:
-            rest = rest[1:].strip()
+        match = _QUANTITY.fullmatch(rest.removeprefix("-"))
+        if match is None or _scale(match["unit"], unit, scale, shown) != _UNIT_MM["in"]:
+            raise _unreadable(shown)
+        total += _amount(match, shown) * _UNIT_MM["in"]
+    elif rest:
+        raise _unreadable(shown)
     if total > LIMIT_MM:
         raise LengthTextError(f"{shown} is longer than any car. Is the unit right?")
     value = float(sign * total)
     return 0.0 if value == 0.0 else value
+
+
+def _plain_marks(text: str) -> str:
+    for mark, plain in _MARKS.items():
+        text = text.replace(mark, plain)
+    return text.strip()
+
+
+def _sign(text: str) -> tuple[int, str]:
+    if text[:1] in ("+", "-"):
+        return (-1 if text[0] == "-" else 1), text[1:].strip()
+    return 1, text
 
 
 def _scale(word: str | None, unit: UnitName, before: Fraction | None, shown: str) -> Fraction:
@@ -176,16 +187,19 @@ def format_exact(mm: float, unit: UnitName) -> str:
 
     A fraction where the length is exactly one of a 64th or coarser; else a decimal in
     ``unit``; in millimeters with their mark where no decimal inch gives the same float.
+    What is no length (not finite) is shown as a dash, which does not read back.
     """
+    if not math.isfinite(mm):
+        return "–"
     if unit == "in":
         for denominator in (16, 32, 64):
             text = _tape(mm, denominator)
-            if parse_length(text, "in") == mm:
+            if _reads_back(text, "in", mm):
                 return text
         inches = mm / 25.4
         for digits in range(1, 18):
             text = format(Decimal(f"{inches:.{digits}g}"), "f")
-            if parse_length(text, "in") == mm:
+            if _reads_back(text, "in", mm):
                 return text
         return f"{_digits_until(mm, 'mm')} mm"
     return _digits_until(mm, "mm")
@@ -193,47 +207,51 @@ def format_exact(mm: float, unit: UnitName) -> str:
 
 def _digits_until(mm: float, unit: UnitName) -> str:
     # Below a thousandth of a nanometer the last text is only the nearest.
-    for decimals in range(0, 26):
+    for decimals in range(26):
         text = _plain(mm, decimals)
-        if parse_length(text, unit) == mm:
+        if _reads_back(text, unit, mm):
             break
     return text
 
 
+def _reads_back(text: str, unit: UnitName, mm: float) -> bool:
+    try:
+        return parse_length(text, unit) == mm
+    except LengthTextError:
+        return False
+
+
+_MINUTES = rf"(?P<min>{_NUMBER})\s*'(?:\s*(?P<sec>{_NUMBER})\s*\")?"
 _ANGLE = re.compile(
-    rf"\s*(?P<sign>[+-]?)\s*(?:(?P<deg>{_NUMBER})\s*(?:°|deg|degrees?)?)"
-    rf"(?:\s*(?P<min>{_NUMBER})\s*')?\s*"
+    r"(?:(?:(?P<whole>\d+)\s+)?(?P<top>\d+)\s*/\s*(?P<bottom>\d+)\s*(?:°|deg\.?|degrees?)?"
+    rf"|(?P<deg>{_NUMBER})\s*(?:°|deg\.?|degrees?)?"
+    rf"|(?:(?P<deg2>\d+)\s*(?:°|deg\.?|degrees?)\s*)?{_MINUTES})"
 )
 
 
 def parse_angle(text: str) -> float:
     """The angle, rad, that a text in degrees says: ``0.5``, ``-1/2``, ``0.5°``, ``0°30'``.
 
-    Raises AngleTextError with a plain reason.
+    Minutes may stand alone (``30'``) and may have seconds. Raises AngleTextError with a
+    plain reason.
     """
     shown = text.strip()
-    plain = shown
-    for mark, usual in _MARKS.items():
-        plain = plain.replace(mark, usual)
-    plain = plain.strip()
-    fraction = re.fullmatch(r"([+-]?)\s*(?:(\d+)\s+)?(\d+)\s*/\s*(\d+)\s*(?:°|deg)?", plain)
-    if fraction is not None and len(plain) <= 40 and int(fraction[4]) != 0:
-        degrees = Fraction(int(fraction[2] or 0)) + Fraction(int(fraction[3]), int(fraction[4]))
-        sign = fraction[1]
-    else:
-        match = _ANGLE.fullmatch(plain) if len(plain) <= 40 else None
-        if match is None:
-            raise AngleTextError(
-                f"Can't read “{shown[:40]}” as an angle. It should look like -0.5 or 0°30'."
-            )
-        degrees = _decimal(match["deg"])
-        if match["min"] is not None:
-            degrees += _decimal(match["min"]) / 60
-        sign = match["sign"]
+    sign, rest = _sign(_plain_marks(shown[:60]))
+    match = _ANGLE.fullmatch(rest) if len(shown) <= 60 else None
+    if match is None:
+        raise AngleTextError(
+            f"Can't read “{shown[:40]}” as an angle. It should look like -0.5 or 0°30'."
+        )
+    degrees = _decimal(match["deg"] or match["deg2"] or match["whole"] or "0")
+    degrees += _decimal(match["min"] or "0") / 60 + _decimal(match["sec"] or "0") / 3600
+    if match["bottom"] is not None:
+        if int(match["bottom"]) == 0:
+            raise AngleTextError(f"Can't read “{shown}”: a fraction can't be over zero.")
+        degrees += Fraction(int(match["top"]), int(match["bottom"]))
     if degrees > LIMIT_DEG:
         raise AngleTextError(f"{shown} is more than a whole turn.")
     value = radians_of(degrees)
-    return -value if sign == "-" and value else value
+    return -value if sign < 0 and value else value
 
 
 def radians_of(degrees: Fraction) -> float:
@@ -253,11 +271,15 @@ def format_angle_exact(radians: float) -> str:
 
     Degrees are read with exact decimals (``radians_of``), so that every float has one.
     """
+    if not math.isfinite(radians):
+        return "–"
     degrees = Fraction(radians) * 180 / _PI
-    for decimals in range(0, 30):
+    for decimals in range(30):
         scaled = round(degrees * 10**decimals)
         if radians_of(Fraction(scaled, 10**decimals)) == radians:
             break
     digits = str(abs(scaled)).rjust(decimals + 1, "0")
     sign = "-" if scaled < 0 else ""
+    if scaled == 0:
+        return "0"
     return f"{sign}{digits[:-decimals]}.{digits[-decimals:]}" if decimals else f"{sign}{digits}"
