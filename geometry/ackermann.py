@@ -16,7 +16,7 @@ import numpy as np
 
 from geometry.corner import Corner, Poses, space
 from geometry.layout import SIDES, Layout, Side, SideName
-from geometry.linkage import Array
+from geometry.linkage import COINCIDENT_MM, Array
 from geometry.steering import inner_shifts
 
 LIMIT_STEP = 1.0
@@ -83,7 +83,7 @@ def axis_at_height(poses: Poses, up: Array | float) -> Array:
     """Where the kingpin axis passes a height ``up`` (...), (3, ...) mm; NaN if it never does."""
     axis = poses.upper_ball - poses.lower_ball
     with np.errstate(all="ignore"):
-        rise = np.where(axis[2] == 0.0, np.nan, axis[2])
+        rise = np.where(np.abs(axis[2]) < COINCIDENT_MM, np.nan, axis[2])
         return np.asarray(poses.lower_ball + (up - poses.lower_ball[2]) / rise * axis)
 
 

@@ -28,7 +28,8 @@ ARM_REACH = 100.0
 """How far inboard and outboard a place for the arm's end is looked for, mm."""
 
 _TRIES = 21
-_ROUNDS = 6
+_ROUNDS = 40
+_PERCENT_TOLERANCE = 1e-8
 
 
 @dataclass(frozen=True)
@@ -181,22 +182,28 @@ def _move_for_percent(plan: PlanView, percent: float, inner_angle: float) -> flo
             f"The inner wheel does not reach {np.degrees(inner_angle):.0f} degrees"
             " within the steering's travel."
         )
-    for _ in range(_ROUNDS):
-        spans = np.flatnonzero(gaps[:-1] * gaps[1:] <= 0.0)
-        if spans.size == 0:
-            raise LayoutError(
-                f"No place of the steering arm's end within {ARM_REACH:.0f} mm"
-                f" gives {percent:.0f} percent Ackermann."
-            )
-        middles = 0.5 * (tries[spans] + tries[spans + 1])
-        k = int(spans[np.argmin(np.abs(middles))])
-        low, high = float(tries[k]), float(tries[k + 1])
-        if high - low < 1e-3:
-            break
-        tries = np.linspace(low, high, _TRIES)
-        gaps = _gaps(plan, tries, percent, inner_angle)
+    spans = np.flatnonzero(gaps[:-1] * gaps[1:] <= 0.0)
+    if spans.size == 0:
+        raise LayoutError(
+            f"No place of the steering arm's end within {ARM_REACH:.0f} mm"
+            f" gives {percent:.0f} percent Ackermann."
+        )
+    k = int(spans[np.argmin(np.abs(tries[spans] + tries[spans + 1]))])
+    low, high = float(tries[k]), float(tries[k + 1])
     at_low, at_high = float(gaps[k]), float(gaps[k + 1])
-    return low if at_high == at_low else low - at_low * (high - low) / (at_high - at_low)
+    # Regula falsi by the Illinois rule: the bracket never lets the root go.
+    best = high
+    for _ in range(_ROUNDS):
+        best = high if at_high == at_low else high - at_high * (high - low) / (at_high - at_low)
+        now = float(_gaps(plan, np.array([best]), percent, inner_angle)[0])
+        if not abs(now) > _PERCENT_TOLERANCE:
+            break
+        if now * at_high < 0.0:
+            low, at_low = high, at_high
+        else:
+            at_low *= 0.5
+        high, at_high = best, now
+    return best
 
 
 def _gaps(plan: PlanView, moves: Array, percent: float, inner_angle: float) -> Array:

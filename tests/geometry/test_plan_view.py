@@ -250,7 +250,12 @@ def everything(plan: PlanView) -> None:
         (with_arm(594.4, -4.6), 0.0, ""),
         (replace(REAR, left=ARMS.moved(TIE_OUTER, Point(300, 330.3, -127))), 0.0, ""),
     ],
-    ids=["out of reach", "no pitman arm", "arm on the kingpin", "tie rod without length"],
+    ids=[
+        "out of reach",
+        "no pitman arm",
+        "arm on the kingpin",
+        "tie rod without length",
+    ],
 )
 def test_hopeless_steering_is_marked_and_said_without_a_warning(
     layout: Layout, travel: float, words: str
@@ -263,3 +268,11 @@ def test_hopeless_steering_is_marked_and_said_without_a_warning(
     if words:
         assert words in " ".join(plan.notes)
         assert plan.turning_circle == {"left": None, "right": None}
+
+
+def test_a_level_kingpin_has_no_spacing_and_says_so() -> None:
+    level = replace(REAR, left=ARMS.moved(UPPER_BALL, Point(700, 190, 5)))
+    plan = plan_of(level)
+    everything(plan)
+    assert plan.spacing is None and plan.percent is None
+    assert any("never meets the floor" in note for note in plan.notes)
