@@ -45,7 +45,7 @@ def joint_swings(corner: Corner, poses: Poses) -> tuple[JointSwing, ...]:
         to_knuckle = _knuckle_turn(ride, poses)
 
         def seen(now: Array) -> Array:
-            return np.einsum("ji...,j...->i...", to_knuckle, now)
+            return np.asarray(np.einsum("ji...,j...->i...", to_knuckle, now))
 
         arms = [
             (names.LOWER_BALL, ride.lower_ball - corner.lower_rear,
@@ -66,7 +66,7 @@ def joint_swings(corner: Corner, poses: Poses) -> tuple[JointSwing, ...]:
 def _knuckle_turn(ride: Poses, poses: Poses) -> Array:
     """The knuckle's rotation (3, 3, ...) from ride height to each pose."""
     before, now = _frame(ride), _frame(poses)
-    return np.einsum("ia...,ja...->ij...", now, before)
+    return np.asarray(np.einsum("ia...,ja...->ij...", now, before))
 
 
 def _frame(poses: Poses) -> Array:

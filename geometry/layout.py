@@ -191,7 +191,9 @@ class RelayRod:
         return point
 
     def moved(self, name: str, to: Point) -> RelayRod:
-        return replace(self, **{_RELAY_FIELDS[name]: to})
+        places = {own: self[key] for key, own in _RELAY_FIELDS.items()}
+        places[_RELAY_FIELDS[name]] = to
+        return RelayRod(**places, box_side=self.box_side)
 
 
 _RELAY_FIELDS = {

@@ -36,8 +36,8 @@ class Readout:
     tip: str = ""
 
 
-def _scalar(values: Array) -> float | None:
-    value = float(np.asarray(values).reshape(-1)[0])
+def _scalar(values: Array | float) -> float | None:
+    value = float(np.ravel(np.asarray(values))[0])
     return value if math.isfinite(value) else None
 
 

@@ -133,7 +133,7 @@ def _held_knuckle(corner: Corner, swing: Array) -> tuple[Array, Array, Array, Ar
 
     def carried(place: Array) -> Array:
         local = np.einsum("ki...,k...->i...", ride, place - corner.lower_ball)
-        return lower + np.einsum("ki...,i...->k...", now, local)
+        return np.asarray(lower + np.einsum("ki...,i...->k...", now, local))
 
     strut = corner.points.get(names.STRUT_LOWER, corner.wheel_center)
     return spin, carried(corner.wheel_center), motion.tie_outer, carried(strut)
