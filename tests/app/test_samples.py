@@ -159,3 +159,9 @@ def test_the_front_steer_car_has_its_rack_ahead_and_arms_leaning_outboard():
 def test_missing_data_is_said_in_words():
     with pytest.raises(FileNotFoundError, match="no such folder"):
         data_path("no such folder")
+
+
+def test_the_readme_lists_every_sample():
+    readme = (Path(__file__).parent.parent.parent / "README.md").read_text(encoding="utf-8")
+    listed = {line.split("`")[1] for line in readme.splitlines() if line.startswith("| `")}
+    assert listed == {path.name for path in sample_paths()}
