@@ -27,7 +27,8 @@ def check(subject: Subject) -> Iterator[Finding]:
     state = subject.state
     toe = toe_of(state.pivots.motion, state.corner, state.corner.tie_inner[1:])[0]
     lengths = toe_length(state.side, toe)
-    # Poses out of reach are NaN here; the reach check speaks of them.
+    # Poses out of reach have no toe; the reach check speaks of them.
+    lengths = np.where(state.pivots.motion.assembles, lengths, np.nan)
     over_limit = False
     if bool(np.all(np.isfinite(lengths))):
         total = float(lengths.max() - lengths.min())
