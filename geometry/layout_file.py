@@ -7,6 +7,7 @@ which is made from the same table as the reading and writing here.
 from __future__ import annotations
 
 import json
+from collections import Counter
 from collections.abc import Mapping
 from dataclasses import dataclass
 from decimal import Decimal, InvalidOperation
@@ -15,9 +16,9 @@ from typing import Any
 
 from geometry import records
 from geometry.layout import (
+    RELAY_POINTS,
     SIDE_POINTS,
     SIDES,
-    RELAY_POINTS,
     Job,
     Layout,
     Loads,
@@ -47,13 +48,12 @@ from geometry.records import (
     describe,
     length,
 )
-from geometry.text_file import TextFileError, read_text_file, write_text_file
+from geometry.text_file import TextFileError, printable, read_text_file, write_text_file
 from geometry.tolerances import FIGURES, TOLERANCES
 
 FORMAT = "bobline layout"
 VERSION = 1
 SIZE_LIMIT = 8_000_000
-DEPTH_LIMIT = 40
 
 
 class LayoutFileError(ValueError):
@@ -79,13 +79,14 @@ def _check_points(present: Mapping[str, Any]) -> list[str]:
 _TIRE = Record(
     Tire,
     (
-        Field("loaded radius", "radius", length("a length in mm above zero", 1.0)),
-        Field("width", "width", length("a length in mm above zero", 1.0), Tire.width),
+        Field("loaded radius", "radius", length(low=0.0)),
+        Field("width", "width", length(low=0.0), Tire.width),
         Field("rim diameter", "rim_diameter", length(low=0.0), Tire.rim_diameter),
         Field("rim width", "rim_width", length(low=0.0), Tire.rim_width),
         Field("wheel offset", "offset", length(), 0.0),
         Field("size", "size", Text(60), ""),
     ),
+    name="tire",
 )
 _RATE = Number("a rate in N/mm", 0.0, 1e6)
 _MASS = Number("a mass in kg", 0.0, 1e6)
@@ -100,16 +101,18 @@ _SPRING = Record(
         Field("shortest", "shortest", Maybe(length(low=0.0)), None),
         Field("longest", "longest", Maybe(length(low=0.0)), None),
     ),
+    name="spring",
 )
 _SIDE = Record(
     Side,
     (
-        Field("points", "points", Named(SIDE_POINTS, records.POINT, _check_points)),
+        Field("points", "points", Named(dict.fromkeys(SIDE_POINTS, records.POINT), _check_points)),
         Field("static camber", "static_camber", Angle(45.0), 0.0),
         Field("static toe", "static_toe", Angle(45.0), 0.0),
         Field("tire", "tire", _TIRE),
         Field("spring", "spring", _SPRING, Spring()),
     ),
+    name="side",
 )
 _RELAY_KEYS = dict(
     zip(RELAY_POINTS, ("pitman_pivot", "pitman_end", "idler_pivot", "idler_end"), strict=True)
@@ -121,8 +124,9 @@ _RELAY = Record(
         Field("steering box side", "box_side", Choice(SIDES), "left"),
     ),
     fixed=(("kind", "relay rod"),),
+    name="relay rod",
 )
-_RACK = Record(Rack, (), fixed=(("kind", "rack"),))
+_RACK = Record(Rack, (), fixed=(("kind", "rack"),), name="rack")
 
 
 @dataclass(frozen=True)
@@ -134,6 +138,9 @@ class _Steering:
 
     def read(self, raw: Any, place: str, faults: Faults) -> Any:
         kind = raw.get("kind") if isinstance(raw, dict) else None
+        if kind is not None and kind not in ("rack", "relay rod"):
+            Choice(("rack", "relay rod")).read(kind, f"{place} › kind", faults)
+            return None
         record: Record[Any] = _RELAY if kind == "relay rod" else _RACK
         return record.read(raw, place, faults)
 
@@ -157,6 +164,7 @@ _LOADS = Record(
         Field("rear roll center height", "rear_roll_center_height", Maybe(length()), None),
         Field("rear track", "rear_track", Maybe(length(low=1.0)), None),
     ),
+    name="loads",
 )
 _NO_GO = Record(
     NoGo,
@@ -167,20 +175,58 @@ _NO_GO = Record(
         Field("side", "side", Maybe(Choice(SIDES)), None),
         Field("clearance", "clearance", length(low=0.0), NoGo.clearance),
     ),
+    name="no-go shape",
 )
-_TARGET = Record(
-    Target,
-    (
-        Field("figure", "figure", Choice(tuple(FIGURES))),
-        Field("low", "low", Maybe(Number()), None),
-        Field("high", "high", Maybe(Number()), None),
-    ),
-    note="Limits in mm, rad, or per mm of travel.",
-)
+
+
+def _limit(kind: str) -> Number | Angle:
+    """How a limit of a kind of tolerances.Kind stands in the file."""
+    return Angle() if kind in ("angle", "rate") else Number()
+
+
+def _target(angular: bool) -> Record[Target]:
+    keys = [k for k, figure in FIGURES.items() if (figure.kind in ("angle", "rate")) == angular]
+    limit = Maybe(_limit("angle" if angular else "length"))
+    return Record(
+        Target,
+        (
+            Field("figure", "figure", Choice(tuple(keys))),
+            Field("low", "low", limit, None),
+            Field("high", "high", limit, None),
+        ),
+        note="Limits in degrees, or degrees per mm." if angular else "Limits in mm, or mm per mm.",
+        name="target for an angle" if angular else "target for a length",
+    )
+
+
+@dataclass(frozen=True)
+class _Target:
+    """A target, its limits in the unit of the figure it names."""
+
+    records = (_target(angular=False), _target(angular=True))
+
+    def _record(self, figure: object) -> Record[Target]:
+        known = FIGURES.get(figure) if isinstance(figure, str) else None
+        return self.records[known is not None and known.kind in ("angle", "rate")]
+
+    def write(self, value: Target) -> Any:
+        return self._record(value.figure).write(value)
+
+    def read(self, raw: Any, place: str, faults: Faults) -> Any:
+        figure = raw.get("figure") if isinstance(raw, dict) else None
+        if figure is not None and figure not in FIGURES:
+            Choice(tuple(FIGURES)).read(figure, f"{place} › figure", faults)
+            return None
+        return self._record(figure).read(raw, place, faults)
+
+    def schema(self) -> Schema:
+        return {"oneOf": [record.schema() for record in self.records]}
+
+
 _LAYOUT = Record(
     Layout,
     (
-        Field("title", "title", Text(200), "Untitled"),
+        Field("title", "title", Text(), "Untitled"),
         Field("shown in", "units", Choice(("in", "mm")), "in"),
         Field("left", "left", _SIDE),
         Field("right", "right", Maybe(_SIDE), None),
@@ -189,8 +235,11 @@ _LAYOUT = Record(
         Field("center of gravity height", "cg_height", Maybe(length()), None),
         Field("loads", "loads", _LOADS, Loads()),
         Field("no-go shapes", "no_go", Items(_NO_GO), ()),
-        Field("targets", "targets", Items(_TARGET), ()),
-        Field("tolerances", "tolerances", Named(tuple(TOLERANCES), Number()), {}),
+        Field("targets", "targets", Items(_Target()), ()),
+        Field(
+            "tolerances", "tolerances",
+            Named({key: _limit(entry.kind) for key, entry in TOLERANCES.items()}), {},
+        ),
         Field(
             "locked nails", "locked",
             Items(Choice(SIDE_POINTS + RELAY_POINTS), sort=True), frozenset(),
@@ -198,18 +247,24 @@ _LAYOUT = Record(
         Field("assumed", "assumed", Items(Text()), ()),
     ),
     note="One car. Right is null while it mirrors the left.",
+    name="layout",
 )
 _JOB = Record(
     Job,
     (
         Field("as planned", "planned", _LAYOUT),
         Field("as found", "found", Maybe(_LAYOUT), None),
-        Field("shop", "shop", Text(200), ""),
-        Field("customer", "customer", Text(200), ""),
-        Field("notes", "notes", Text(20_000), ""),
-        Field("stance", "stance", Text(200), ""),
+        Field("shop", "shop", Text(), ""),
+        Field("customer", "customer", Text(), ""),
+        Field("notes", "notes", Text(200_000), ""),
+        Field("stance", "stance", Text(), ""),
     ),
     fixed=(("format", FORMAT), ("lengths", "mm"), ("angles", "deg")),
+)
+
+
+_RECORDS: tuple[Record[Any], ...] = (
+    _LAYOUT, _SIDE, records.POINT, _TIRE, _SPRING, _RACK, _RELAY, _LOADS, _NO_GO, *_Target.records,
 )
 
 
@@ -223,17 +278,29 @@ def layout_schema() -> Schema:
         "title": "Bobline layout file",
         "description": "Lengths in mm, angles in degrees. See FILES.md.",
         **schema,
+        "$defs": {record.name: record.definition() for record in _RECORDS},
     }
+
+
+def layout_schema_text() -> str:
+    """The text of layout.schema.json."""
+    return json.dumps(layout_schema(), indent=1, ensure_ascii=False) + "\n"
 
 
 # --- writing -----------------------------------------------------------------------
 
 
 def job_to_text(job: Job) -> str:
-    """A job as the text of a layout file; the same job always gives the same text."""
+    """A job as the text of a layout file; the same job always gives the same text.
+
+    Raises LayoutFileError, with places, for a job that could not be read again (a figure
+    that is not finite, say): such a text must not replace a good file.
+    """
     record = _JOB.write(job)
     head = {"format": record.pop("format"), "version": Raw(str(VERSION))}
-    return _json({**head, **record}, "") + "\n"
+    text = _json({**head, **record}, "") + "\n"
+    job_from_text(text)
+    return text
 
 
 def _json(value: Any, indent: str) -> str:
@@ -260,7 +327,10 @@ def _json(value: Any, indent: str) -> str:
 
 
 def write_job(path: Path | str, job: Job) -> None:
-    """Save a job; the old file stands until the new one is safely on disk. Raises OSError."""
+    """Save a job; the old file stands until the new one is safely on disk.
+
+    Raises OSError, or LayoutFileError for a job that could not be read again.
+    """
     write_text_file(path, job_to_text(job))
 
 
@@ -278,17 +348,19 @@ def read_job(path: Path | str) -> Job:
 
 def job_from_text(text: str) -> Job:
     """A job from the text of a layout file. Raises LayoutFileError with every fault."""
-    raw = _parse(text)
+    faults = Faults()
+    raw = _parse(text, faults)
     if not isinstance(raw, dict) or raw.get("format") != FORMAT:
         raise LayoutFileError(
-            f'This is not a layout file: it does not start with "format": "{FORMAT}".'
+            f'This is not a layout file: it does not hold "format": "{FORMAT}".'
         )
-    version = raw.pop("version", None)
+    if "version" not in raw:
+        raise LayoutFileError(f"version: is missing; expected {VERSION}.")
+    version = raw.pop("version")
     if version != VERSION or isinstance(version, bool):
         if isinstance(version, int) and version > VERSION:
             raise LayoutFileError("This layout was made by a newer Bobline. Update to open it.")
         raise LayoutFileError(f"version: expected {VERSION}, got {describe(version)}.")
-    faults = Faults()
     job = _JOB.read(raw, "", faults)
     if faults.found:
         raise LayoutFileError(*faults.found)
@@ -300,70 +372,44 @@ def _number(text: str) -> Decimal:
     if len(text) > 400:
         raise LayoutFileError(f"The number {text[:20]}… is too long.")
     try:
-        value = Decimal(text)
+        return Decimal(text)
     except InvalidOperation:
-        raise LayoutFileError(f"The number {text[:20]}… can't be read.") from None
-    # An exponent out of any car's range would cost time and memory as an exact fraction.
-    if not -60 <= value.adjusted() <= 60 and value != 0:
-        raise LayoutFileError(f"The number {text[:40]} is out of any range.")
-    return value
+        # An exponent beyond what can be counted.
+        return Decimal("Infinity")
 
 
-def _constant(text: str) -> Any:
-    raise LayoutFileError(f"{text} is not a number that a layout can hold.")
+def _whole_number(text: str) -> int | Decimal:
+    return int(text) if len(text) < 19 else _number(text)
 
 
-def _group(pairs: list[tuple[str, Any]]) -> dict[str, Any]:
-    group = dict(pairs)
-    if len(group) != len(pairs):
-        seen: set[str] = set()
-        for key, _ in pairs:
-            if key in seen:
-                raise LayoutFileError(f'The entry "{key[:60]}" stands twice in one group.')
-            seen.add(key)
-    return group
+def _parse(text: str, faults: Faults) -> Any:
+    """JSON text as plain data, numbers exact; LayoutFileError if it is no JSON at all.
 
+    NaN and Infinity pass as decimals, to be refused at their place in the file.
+    """
 
-def _parse(text: str) -> Any:
-    """JSON text as plain data, numbers exact; every trouble as a LayoutFileError."""
-    if _depth(text) > DEPTH_LIMIT:
-        raise LayoutFileError("The groups in this file are nested too deep for a layout.")
+    def group(pairs: list[tuple[str, Any]]) -> dict[str, Any]:
+        entries = dict(pairs)
+        if len(entries) != len(pairs):
+            counts = Counter(key for key, _ in pairs)
+            for key in (key for key, count in counts.items() if count > 1):
+                faults.add("", f'The entry "{printable(key)}" stands twice in one group.')
+        return entries
+
     try:
         return json.loads(
             text,
             parse_float=_number,
-            parse_int=_number_or_int,
-            parse_constant=_constant,
-            object_pairs_hook=_group,
+            parse_int=_whole_number,
+            parse_constant=Decimal,
+            object_pairs_hook=group,
         )
     except json.JSONDecodeError as error:
         raise LayoutFileError(
             f"Line {error.lineno}, column {error.colno}: the text breaks off or is no JSON "
             f"({error.msg[:1].lower()}{error.msg[1:]})."
         ) from None
-
-
-def _number_or_int(text: str) -> int | Decimal:
-    return int(text) if len(text) < 19 else _number(text)
-
-
-def _depth(text: str) -> int:
-    """How deep brackets are nested, strings left out."""
-    depth = deepest = 0
-    inside = skip = False
-    for letter in text:
-        if skip:
-            skip = False
-        elif inside:
-            if letter == "\\":
-                skip = True
-            elif letter == '"':
-                inside = False
-        elif letter == '"':
-            inside = True
-        elif letter in "[{":
-            depth += 1
-            deepest = max(deepest, depth)
-        elif letter in "]}":
-            depth -= 1
-    return deepest
+    except RecursionError:
+        raise LayoutFileError(
+            "The groups in this file are nested too deep for a layout."
+        ) from None

@@ -6,6 +6,7 @@ while noting every fault with its place in the file, and its part of the JSON Sc
 
 from __future__ import annotations
 
+import math
 from collections.abc import Callable, Mapping, Sequence
 from dataclasses import dataclass
 from decimal import Decimal
@@ -13,7 +14,8 @@ from fractions import Fraction
 from typing import Any, Generic, Protocol, TypeVar
 
 from geometry.layout import Point
-from geometry.lengths import LIMIT_DEG, LIMIT_MM, format_angle_exact, radians_of
+from geometry.lengths import LIMIT_DEG, LIMIT_MM, radians_of, shortest_degrees
+from geometry.text_file import printable
 
 Schema = dict[str, Any]
 T = TypeVar("T")
@@ -44,15 +46,20 @@ def describe(value: object) -> str:
     if isinstance(value, dict):
         return "a group of entries"
     if isinstance(value, list):
-        return "a list"
+        return f"a list of {len(value)}"
     if isinstance(value, str):
-        return f'"{value[:40]}"'
+        return f'"{printable(value)}"'
     return str(value)[:40]
 
 
 def number_text(value: float) -> Raw:
-    """A float as the shortest JSON number that reads back the same."""
-    text = repr(float(value))
+    """A float as the shortest JSON number that reads back the same.
+
+    What is not finite becomes a text that reading refuses, with its place in the file.
+    """
+    if not math.isfinite(value):
+        return Raw("NaN" if math.isnan(value) else "Infinity")
+    text = repr(float(value) + 0.0)
     return Raw(text[:-2] if text.endswith(".0") else text)
 
 
@@ -79,10 +86,11 @@ class Number:
         if isinstance(raw, bool) or not isinstance(raw, int | Decimal):
             faults.add(place, f"expected {self.words}, got {describe(raw)}.")
             return 0.0
-        if not self.low <= raw <= self.high:
+        if not (raw == raw and self.low <= raw <= self.high):
             faults.add(
                 place,
-                f"expected {self.words} from {self.low:g} to {self.high:g}, got {describe(raw)}.",
+                f"expected {self.words} from {self.low:,.0f} to {self.high:,.0f}, "
+                f"got {describe(raw)}.",
             )
             return 0.0
         return float(raw)
@@ -103,13 +111,20 @@ class Angle:
     limit: float = LIMIT_DEG
 
     def write(self, value: float) -> Raw:
-        return Raw(format_angle_exact(value))
+        if not math.isfinite(value):
+            return number_text(value)
+        degrees = shortest_degrees(value)
+        return Raw(f"{degrees:f}" if -9 < degrees.adjusted() < 9 else str(degrees))
 
     def read(self, raw: Any, place: str, faults: Faults) -> float:
         number = Number("an angle in degrees", -self.limit, self.limit)
         before = len(faults.found)
         number.read(raw, place, faults)
-        return 0.0 if len(faults.found) > before else radians_of(Fraction(raw))
+        if len(faults.found) > before:
+            return 0.0
+        # An exact fraction of some tiny number would take more memory than there is.
+        exact = Fraction(raw) if abs(raw) > Decimal("1e-400") else Fraction(0)
+        return radians_of(exact)
 
     def schema(self) -> Schema:
         return {"type": "number", "minimum": -self.limit, "maximum": self.limit}
@@ -251,13 +266,15 @@ class Record(Generic[T]):
     """A group of named entries that makes one object.
 
     ``make`` builds the object from the attributes; a ValueError from it becomes a fault.
-    ``fixed`` entries always say the same in the file and are checked.
+    ``fixed`` entries always say the same in the file and are checked. A record with a
+    ``name`` is described once in the schema and referred to by it.
     """
 
     make: Callable[..., T]
     fields: tuple[Field, ...]
     fixed: tuple[tuple[str, str], ...] = ()
     note: str = ""
+    name: str = ""
 
     def write(self, value: T) -> dict[str, Any]:
         out: dict[str, Any] = dict(self.fixed)
@@ -273,13 +290,12 @@ class Record(Generic[T]):
         keys = [key for key, _ in self.fixed] + [field.key for field in self.fields]
         for key in raw:
             if key not in keys:
-                known = ", ".join(keys)
-                faults.add(_at(place, str(key)[:40]), f"is not known here. Known are: {known}.")
+                faults.add(_at(place, printable(key)), _unknown(keys))
         for key, wanted in self.fixed:
-            if raw.get(key) != wanted:
-                faults.add(
-                    _at(place, key), f'expected "{wanted}", got {describe(raw.get(key))}.'
-                )
+            if key not in raw:
+                faults.add(_at(place, key), f'is missing; expected "{wanted}".')
+            elif raw[key] != wanted:
+                faults.add(_at(place, key), f'expected "{wanted}", got {describe(raw[key])}.')
         values: dict[str, Any] = {}
         for field in self.fields:
             at = _at(place, field.key)
@@ -298,6 +314,10 @@ class Record(Generic[T]):
             return None
 
     def schema(self) -> Schema:
+        return {"$ref": f"#/$defs/{self.name}"} if self.name else self.definition()
+
+    def definition(self) -> Schema:
+        """The schema of this record itself, as it stands among the schema's ``$defs``."""
         properties: Schema = {key: {"const": words} for key, words in self.fixed}
         properties |= {field.key: field.kind.schema() for field in self.fields}
         required = [key for key, _ in self.fixed]
@@ -311,6 +331,10 @@ class Record(Generic[T]):
         return {"description": self.note, **out} if self.note else out
 
 
+def _unknown(known: Sequence[str]) -> str:
+    return f"is not known here. Known are: {', '.join(known)}."
+
+
 def _at(place: str, key: str) -> str:
     return f"{place} › {key}" if place else key
 
@@ -322,43 +346,46 @@ POINT = Record(
         Field("up", "up", length()),
         Field("fore", "fore", length(), 0.0),
     ),
+    note="over: from the centerline, outboard positive; up: from the floor; fore: ahead of "
+    "the front axle line.",
+    name="point",
 )
 
 
 @dataclass(frozen=True)
 class Named(Generic[T]):
-    """A group whose keys are taken from a list of names, all of one kind of value.
+    """A group of values whose keys are taken from a list of names, each with its kind.
 
     ``check`` gets the names present and returns sentences on what is wrong with the set.
     """
 
-    names: tuple[str, ...]
-    kind: Kind[T]
+    kinds: Mapping[str, Kind[T]]
     check: Callable[[Mapping[str, Any]], list[str]] | None = None
 
     def write(self, value: Mapping[str, T]) -> dict[str, Any]:
-        return {name: self.kind.write(value[name]) for name in self.names if name in value}
+        out = {name: kind.write(value[name]) for name, kind in self.kinds.items() if name in value}
+        # Written all the same, so that reading back tells of it instead of losing it.
+        return out | {name: None for name in value if name not in self.kinds}
 
     def read(self, raw: Any, place: str, faults: Faults) -> dict[str, T]:
         if not isinstance(raw, dict):
             faults.add(place, f"expected a group of entries, got {describe(raw)}.")
             return {}
         for key in raw:
-            if key not in self.names:
-                known = ", ".join(self.names)
-                faults.add(_at(place, str(key)[:40]), f"is not known here. Known are: {known}.")
+            if key not in self.kinds:
+                faults.add(_at(place, printable(key)), _unknown(list(self.kinds)))
         if self.check is not None:
             for words in self.check(raw):
                 faults.add(place, words)
         return {
-            name: self.kind.read(raw[name], _at(place, name), faults)
-            for name in self.names
+            name: kind.read(raw[name], _at(place, name), faults)
+            for name, kind in self.kinds.items()
             if name in raw
         }
 
     def schema(self) -> Schema:
         return {
             "type": "object",
-            "properties": {name: self.kind.schema() for name in self.names},
+            "properties": {name: kind.schema() for name, kind in self.kinds.items()},
             "additionalProperties": False,
         }

@@ -24,18 +24,13 @@ def read_text_file(path: Path | str, limit: int) -> str:
     plain sentence, or OSError as the system gives it.
     """
     path = Path(path)
+    # Looked at before it is opened: opening alone makes some devices act.
+    _refuse(path.stat(), limit)
     # Opened without waiting, so that a pipe put in the file's place can't hang the program.
-    descriptor = os.open(
-        path, os.O_RDONLY | getattr(os, "O_NONBLOCK", 0) | getattr(os, "O_BINARY", 0)
-    )
+    waitless = getattr(os, "O_NONBLOCK", 0) | getattr(os, "O_NOCTTY", 0)
+    descriptor = os.open(path, os.O_RDONLY | waitless | getattr(os, "O_BINARY", 0))
     with os.fdopen(descriptor, "rb") as file:
-        status = os.fstat(file.fileno())
-        if stat.S_ISDIR(status.st_mode):
-            raise TextFileError("This is a folder, not a file.")
-        if not stat.S_ISREG(status.st_mode):
-            raise TextFileError("This is a device or a pipe, not an ordinary file.")
-        if status.st_size > limit:
-            raise TextFileError(_too_large(limit))
+        _refuse(os.fstat(file.fileno()), limit)
         data = file.read(limit + 1)
     if len(data) > limit:
         raise TextFileError(_too_large(limit))
@@ -51,6 +46,21 @@ def read_text_file(path: Path | str, limit: int) -> str:
     if "\x00" in text:
         raise TextFileError("This is not a text file.")
     return text
+
+
+def _refuse(status: os.stat_result, limit: int) -> None:
+    """Raise TextFileError for what is no ordinary file of a fair size."""
+    if stat.S_ISDIR(status.st_mode):
+        raise TextFileError("This is a folder, not a file.")
+    if not stat.S_ISREG(status.st_mode):
+        raise TextFileError("This is a device or a pipe, not an ordinary file.")
+    if status.st_size > limit:
+        raise TextFileError(_too_large(limit))
+
+
+def printable(text: str, most: int = 40) -> str:
+    """The beginning of a text from a file, safe to show: no control letters or halves."""
+    return "".join(letter if letter.isprintable() else "\ufffd" for letter in text[:most])
 
 
 def _too_large(limit: int) -> str:
@@ -72,7 +82,7 @@ def write_text_file(path: Path | str, text: str) -> None:
         if not os.access(target, os.W_OK):
             raise PermissionError(13, "the file is write-protected", str(target))
     descriptor, temporary = tempfile.mkstemp(
-        dir=target.parent, prefix=f".{target.name[:100]}.", suffix=".part"
+        dir=target.parent, prefix=f".{target.name[:40]}.", suffix=".part"
     )
     try:
         with os.fdopen(descriptor, "wb") as file:
