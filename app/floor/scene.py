@@ -1,0 +1,136 @@
+"""What stands on the floor: one scene whose items follow the document's solution."""
+
+from __future__ import annotations
+
+from PySide6.QtGui import QFont
+from PySide6.QtWidgets import QGraphicsScene
+
+from app.floor.marks import MarkItems, StringItems
+from app.floor.nails import Key, NailItems
+from app.floor.no_go import NoGoItems
+from app.floor.parts import PartItems
+from app.floor.tags import TagItems
+from app.palette import Palette
+from geometry.front_parts import car_parts, side_parts
+from geometry.front_strings import (
+    InstantCenter,
+    inner_pivot_places,
+    instant_center,
+    strings,
+    tire_floor,
+)
+from geometry.layout import SIDES, SideName
+from geometry.linkage import Array
+from geometry.solution import Solution
+from geometry.standing import XY, Standing, relay_standing, standing
+
+
+class FloorScene(QGraphicsScene):
+    """Items made once and moved with every solution."""
+
+    def __init__(self) -> None:
+        super().__init__()
+        self.parts = PartItems(self)
+        self.no_go = NoGoItems(self)
+        self.strings = StringItems(self)
+        self.marks = MarkItems(self)
+        self.nails = NailItems(self)
+        self.tags = TagItems(self)
+        self.stands: dict[SideName, Standing] = {}
+        self.places: dict[Key, XY] = {}
+        self.centers: dict[SideName, InstantCenter] = {}
+        self.roll: XY | None = None
+        self.gravity: XY | None = None
+        self.pivots: dict[tuple[SideName, str], XY] = {}
+        self._strings: list = []
+        self._tire_floor: tuple[XY, XY] | None = None
+        self._zones: dict[SideName, list[Array]] = {}
+
+    def dress(self, palette: Palette, font: QFont, ratio: float) -> None:
+        self.parts.dress(palette, ratio)
+        self.no_go.dress(palette, ratio)
+        self.strings.dress(palette, ratio)
+        self.marks.dress(palette, ratio)
+        self.nails.dress(palette)
+        self.tags.dress(palette, font, ratio)
+
+    def follow(self, solution: Solution, outline: Solution | None, chosen: Key | None) -> None:
+        """Move everything to where a solution has it."""
+        both = {side: standing(solution, side) for side in SIDES}
+        self.stands = both
+        parts = [part for stand in both.values() for part in side_parts(stand)]
+        parts += car_parts(solution, both)
+        self.parts.show(parts, {side for side in SIDES if not both[side].meets})
+        self._follow_found(solution, outline)
+        self.no_go.show(solution.layout.no_go)
+        relay = relay_standing(solution)
+        self.places = {
+            (side, name): relay[name] if name in relay else both[side].points[name]
+            for side, name in solution.layout.nails()
+        }
+        self.nails.show(self.places, solution.layout.locked)
+        self._follow_marks(solution, both)
+        self.show_zones()
+
+    def _follow_found(self, solution: Solution, outline: Solution | None) -> None:
+        if outline is None or _same_car(solution, outline):
+            self.parts.show_found(None)
+            return
+        both = {side: standing(outline, side) for side in SIDES}
+        found = [part for stand in both.values() for part in side_parts(stand)]
+        self.parts.show_found(found + car_parts(outline, both))
+
+    def _follow_marks(self, solution: Solution, both: dict[SideName, Standing]) -> None:
+        self._strings = strings(solution, both)
+        at_ride = all(abs(t) < 1e-9 for t in solution.travel.values())
+        self._tire_floor = None if at_ride else tire_floor(both)
+        self.centers = {}
+        for side in SIDES:
+            center = instant_center(solution, side) if both[side].meets else None
+            if center is not None:
+                self.centers[side] = center
+            near = center is not None and not center.at_infinity and _near(center.place)
+            self.marks.centers[side].put(center.place if near and center is not None else None)
+        self.roll = solution.roll_center_place if solution.assembles else None
+        self.marks.roll.put(self.roll if self.roll is not None and _near(self.roll) else None)
+        high = solution.layout.cg_height
+        self.gravity = None if high is None else (0.0, high)
+        self.marks.gravity.put(self.gravity)
+        self.pivots = {
+            (side, kind): place
+            for side in SIDES
+            for kind, place in inner_pivot_places(both[side]).items()
+            if _near(place)
+        }
+        for key, mark in self.marks.pivots.items():
+            mark.put(self.pivots.get(key))
+
+    def stretch(self, box: tuple[float, float, float, float]) -> None:
+        """Clip the strings to what is in view, mm."""
+        self.strings.show(self._strings, box, self._tire_floor)
+
+    def set_zone(self, side: SideName, outlines: list[Array]) -> None:
+        """Where a side's inner tie-rod pivot may sit: outlines (n, 2) in side measure."""
+        self._zones[side] = outlines
+        self.show_zones()
+
+    def show_zones(self) -> None:
+        for side, outlines in self._zones.items():
+            stand = self.stands.get(side)
+            if stand is not None:
+                moved = [o * (stand.sign, 1.0) + stand.shift for o in outlines]
+                self.marks.set_zone(side, moved)
+
+
+def _near(place: XY) -> bool:
+    """Not so far off that a view's coordinates would suffer."""
+    return abs(place[0]) < 40_000.0 and abs(place[1]) < 40_000.0
+
+
+def _same_car(a: Solution, b: Solution) -> bool:
+    """True if two cars' parts cover each other wholly."""
+    return (
+        a.layout.left == b.layout.left
+        and a.layout.right == b.layout.right
+        and a.layout.steering == b.layout.steering
+    )
