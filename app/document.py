@@ -17,8 +17,8 @@ from geometry.findings import Finding, findings
 from geometry.layout import Job, Layout, Point, SideName, UnitName
 from geometry.solution import Solution, solve
 
-DEFAULT_SPAN = 75.0
-"""Half the travel the curves and ranges go over, mm: about the three inches of a gauge."""
+DEFAULT_SPAN = {"in": 76.2, "mm": 75.0}
+"""Half the travel the curves and ranges go over, mm: the three inches of a gauge."""
 
 
 class Document(QObject):
@@ -39,7 +39,7 @@ class Document(QObject):
         self.path = path
         self._travel: dict[SideName, float] = {"left": 0.0, "right": 0.0}
         self._rack = 0.0
-        self._span = DEFAULT_SPAN
+        self._span = DEFAULT_SPAN[job.planned.units]
         self._selection: tuple[SideName, str] | None = None
         self._showing_found = False
         self._solution: Solution | None = None
@@ -276,6 +276,7 @@ class Document(QObject):
         self._rack = 0.0
         self._selection = None
         self._showing_found = False
+        self._span = DEFAULT_SPAN[job.planned.units]
         self._forget()
         self.opened.emit()
         self.edited.emit()
