@@ -1,4 +1,10 @@
-"""Ball joints and rod ends: how far each swings through travel and steering."""
+"""Ball joints and rod ends: how far each leans in its socket through travel and steering.
+
+Turning about its own stud costs a joint nothing, so steering counts only as far as it
+leans the stud. Studs of ball joints and of the outer tie-rod end are taken to stand along
+the kingpin at ride height, in the middle of their sockets; a real one that is set at an
+angle has more room one way and less the other.
+"""
 
 from __future__ import annotations
 
@@ -8,12 +14,12 @@ import numpy as np
 
 from geometry import layout as names
 from geometry.corner import Corner, Poses
-from geometry.linkage import Array, dot, unit
+from geometry.linkage import Array, cross, dot, unit
 
 
 @dataclass(frozen=True)
 class JointSwing:
-    """How far one joint swings from its ride-height place over some poses.
+    """How far one joint leans from its ride-height place over some poses.
 
     swing (...) rad; ``most`` the largest of it, rad; ``at`` the index of that pose.
     """
@@ -30,55 +36,67 @@ class JointSwing:
         return float(np.ravel(self.swing)[self.at])
 
 
-def _angle(a: Array, b: Array) -> Array:
-    return np.asarray(np.arccos(np.clip(dot(unit(a), unit(b)), -1.0, 1.0)))
-
-
 def joint_swings(corner: Corner, poses: Poses) -> tuple[JointSwing, ...]:
-    """Each joint's swing from ride height: the part it joins against the knuckle's stud.
+    """Each joint's lean from ride height.
 
-    A ball joint's stud stands in the knuckle, so its swing is the angle that its arm turns
-    through as the knuckle sees it; a rod end at the rack's side swings against the body.
+    A ball joint leans by the angle between its stud, which rides with the knuckle, and its
+    socket, which rides with the arm. A rod end's socket may turn about the rod, so only the
+    angle between stud and rod counts. The rack's end leans with the rod against the body.
     """
     with np.errstate(all="ignore"):
         ride = corner.poses(0.0)
-        to_knuckle = _knuckle_turn(ride, poses)
-
-        def seen(now: Array) -> Array:
-            return np.asarray(np.einsum("ji...,j...->i...", to_knuckle, now))
-
-        arms = [
-            (names.LOWER_BALL, ride.lower_ball - corner.lower_rear,
-             poses.lower_ball - corner.lower_rear),
-            (names.TIE_OUTER, ride.tie_outer - ride.tie_inner, poses.tie_outer - poses.tie_inner),
+        stud = unit(ride.upper_ball - ride.lower_ball)
+        knuckle = _turn(_knuckle_edges(ride), _knuckle_edges(poses))
+        stud_now = _turned(knuckle, stud)
+        out = [
+            _ball(names.LOWER_BALL, corner.lower_front, corner.lower_rear,
+                  ride.lower_ball, poses.lower_ball, stud, stud_now)
         ]
         if not corner.is_strut:
-            rear = corner.axis_of("upper")[1]
-            arms.append(
-                (names.UPPER_BALL, ride.upper_ball - rear, poses.upper_ball - rear)
+            front, rear = corner.axis_of("upper")
+            out.append(
+                _ball(names.UPPER_BALL, front, rear, ride.upper_ball, poses.upper_ball, stud,
+                      stud_now)
             )
-        out = [JointSwing(name, _angle(before, seen(now))) for name, before, now in arms]
         rod_ride, rod = ride.tie_outer - ride.tie_inner, poses.tie_outer - poses.tie_inner
+        out.append(
+            JointSwing(names.TIE_OUTER, np.abs(_angle(rod, stud_now) - _angle(rod_ride, stud)))
+        )
         out.append(JointSwing(names.TIE_INNER, _angle(rod_ride, rod)))
     return tuple(out)
 
 
-def _knuckle_turn(ride: Poses, poses: Poses) -> Array:
-    """The knuckle's rotation (3, 3, ...) from ride height to each pose."""
-    before, now = _frame(ride), _frame(poses)
-    return np.asarray(np.einsum("ia...,ja...->ij...", now, before))
+def _ball(
+    name: str, front: Array, rear: Array, ride: Array, now: Array, stud: Array, stud_now: Array
+) -> JointSwing:
+    """The lean of a ball joint between its arm's socket and the knuckle's stud."""
+    axis = front - rear
+    arm = _turn((axis, ride - rear), (axis, now - rear))
+    return JointSwing(name, _angle(_turned(arm, stud), stud_now))
 
 
-def _frame(poses: Poses) -> Array:
-    """Columns: spin axis, kingpin across it, and the third, (3, 3, ...)."""
-    spin = poses.spin_axis
-    kingpin = poses.upper_ball - poses.lower_ball
-    second = unit(kingpin - dot(kingpin, spin) * spin)
-    third = np.stack(
-        [
-            spin[1] * second[2] - spin[2] * second[1],
-            spin[2] * second[0] - spin[0] * second[2],
-            spin[0] * second[1] - spin[1] * second[0],
-        ]
-    )
-    return np.stack([spin, second, third], axis=1)
+def _angle(a: Array, b: Array) -> Array:
+    """Angle (...) between vectors (3, ...); exact for small angles too."""
+    across = cross(a, b)
+    return np.asarray(np.arctan2(np.sqrt(dot(across, across)), dot(a, b)))
+
+
+def _knuckle_edges(poses: Poses) -> tuple[Array, Array]:
+    return poses.spin_axis, poses.upper_ball - poses.lower_ball
+
+
+def _turn(before: tuple[Array, Array], now: tuple[Array, Array]) -> Array:
+    """The rotation (3, 3, ...) that carries one pair of edges of a rigid part to another."""
+    return np.asarray(np.einsum("ia...,ja...->ij...", _frame(*now), _frame(*before)))
+
+
+def _frame(first: Array, second: Array) -> Array:
+    """Right-handed frame (3, 3, ...), columns: along ``first``, ``second`` across it, third."""
+    along = unit(first)
+    across = unit(second - dot(second, along) * along)
+    along, across = np.broadcast_arrays(along, across)
+    return np.stack([along, across, cross(along, across)], axis=1)
+
+
+def _turned(rotation: Array, vector: Array) -> Array:
+    return np.asarray(np.einsum("ij...,j...->i...", rotation, vector))

@@ -76,6 +76,11 @@ _TABLE = (
     Tolerance("relay toe", MM_PER_INCH / 16, "toe",
               "Total toe change from unequal pitman and idler arms", CHOSEN),
     Tolerance("rack travel", 75.0, "length", "Rack travel each way", PRACTICE),
+    # Joints.
+    Tolerance("ball joint swing", 25.0 * _DEG, "angle",
+              "Ball-joint swing from ride height", PRACTICE),
+    Tolerance("rod end swing", 25.0 * _DEG, "angle",
+              "Tie-rod end swing from ride height (a plain rod end has 12 to 18°)", PRACTICE),
     # Measuring slips.
     Tolerance("point spacing", 3.0, "length", "Least distance between two joined pivots", CHOSEN,
               "at least"),
