@@ -13,8 +13,7 @@ from PySide6.QtWidgets import QApplication, QMenu, QMessageBox
 
 from app import files, settings, theme
 from app.resources import __version__, data_path
-from geometry.measure_sheet import blank_measure_sheet, measure_sheet_to_text
-from geometry.measure_sheet import measure_sheet_from_text
+from geometry.measure_sheet import measure_sheet_from_text, starting_sheet, write_measure_sheet
 
 if TYPE_CHECKING:
     from app.window import MainWindow
@@ -200,7 +199,7 @@ class Commands(QObject):
     # --- file -----------------------------------------------------------------------
 
     def new(self, kind: str) -> None:
-        self.window.open_new(measure_sheet_from_text(blank_measure_sheet(kind)))
+        self.window.open_new(measure_sheet_from_text(starting_sheet(kind)))
 
     def open(self) -> None:
         path = files.ask_open(self.window)
@@ -277,7 +276,7 @@ class Commands(QObject):
         if path is None:
             return
         try:
-            path.write_text(measure_sheet_to_text(self.document.layout), encoding="utf-8")
+            write_measure_sheet(path, self.document.layout)
         except OSError as error:
             files.tell_written(self.window, path, error)
 

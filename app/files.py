@@ -20,7 +20,7 @@ from PySide6.QtWidgets import (
 from app import settings
 from app.document import Document
 from geometry.layout import Job
-from geometry.layout_file import write_job
+from geometry.layout_file import LayoutFileError, write_job
 from geometry.open_file import open_job
 
 SUFFIX = ".bobline"
@@ -119,6 +119,10 @@ def _write(document: Document, path: Path, parent: QWidget) -> bool:
             "What stood in the file before is untouched and your work is still open here. "
             "Free some room or pick another folder with Save As.",
         )
+        return False
+    except LayoutFileError as error:
+        heading = f"“{path.name}” was not saved; what stood in it before is untouched."
+        show_faults(parent, heading, list(error.faults))
         return False
     document.mark_saved(path)
     settings.add_recent(path)

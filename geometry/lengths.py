@@ -30,7 +30,7 @@ _UNIT_MM = {
 }
 _MARKS = {
     "″": '"', "”": '"', "“": '"', "''": '"', "′": "'", "’": "'", "‘": "'",
-    "−": "-", "–": "-", "—": "-", "⁄": "/", "\u00a0": " ", "\u2009": " ", "\u202f": " ",
+    "−": "-", "–": "-", "—": "-", "⁄": "/",
     "½": " 1/2", "¼": " 1/4", "¾": " 3/4", "⅛": " 1/8", "⅜": " 3/8", "⅝": " 5/8", "⅞": " 7/8",
 }
 _UNIT_WORDS = {
@@ -67,7 +67,7 @@ def parse_length(text: str, unit: UnitName, *, decimal_comma: bool = False) -> f
     thousands, are refused unless ``decimal_comma`` says what is meant. Raises
     LengthTextError with a plain reason.
     """
-    shown = text.strip()
+    shown = _one_line(text)
     if len(shown) > 60:
         raise LengthTextError("Can't read this: it is too long for a length.")
     if not shown:
@@ -94,6 +94,11 @@ def parse_length(text: str, unit: UnitName, *, decimal_comma: bool = False) -> f
         raise LengthTextError(f"{shown} is longer than any car. Is the unit right?")
     value = float(sign * total)
     return 0.0 if value == 0.0 else value
+
+
+def _one_line(text: str) -> str:
+    """The text with plain spaces for every other sort and for control letters."""
+    return "".join(letter if letter.isprintable() else " " for letter in text).strip()
 
 
 def _plain_marks(text: str) -> str:
@@ -235,7 +240,7 @@ def parse_angle(text: str) -> float:
     Minutes may stand alone (``30'``) and may have seconds. Raises AngleTextError with a
     plain reason.
     """
-    shown = text.strip()
+    shown = _one_line(text)
     sign, rest = _sign(_plain_marks(shown[:60]))
     match = _ANGLE.fullmatch(rest) if len(shown) <= 60 else None
     if match is None:

@@ -4,10 +4,8 @@ from __future__ import annotations
 
 from pathlib import Path
 
+from geometry import layout_file, measure_sheet
 from geometry.layout import Job
-from geometry.layout_file import SIZE_LIMIT, LayoutFileError, job_from_text
-from geometry.measure_sheet import MeasureSheetError, looks_like_sheet, measure_sheet_from_text
-from geometry.measure_sheet import SIZE_LIMIT as SHEET_LIMIT
 from geometry.text_file import TextFileError, read_text_file
 
 
@@ -17,16 +15,16 @@ def open_job(path: Path | str) -> Job:
     Raises OSError, or a ValueError with ``faults``: TextFileError, LayoutFileError or
     MeasureSheetError, every fault a plain sentence.
     """
-    text = read_text_file(path, SIZE_LIMIT)
+    text = read_text_file(path, layout_file.SIZE_LIMIT)
     if text.lstrip().startswith("{"):
-        return job_from_text(text)
-    if looks_like_sheet(text):
-        if len(text) > SHEET_LIMIT:
-            raise MeasureSheetError("A measure sheet of that size can't be one car's.")
-        return measure_sheet_from_text(text)
+        return layout_file.job_from_text(text)
     if not text.strip():
         raise TextFileError("The file is empty.")
-    raise LayoutFileError(
-        "This is neither a layout nor a measure sheet. A layout starts with {, a measure "
-        "sheet with the header item,value,over,up,fore."
-    )
+    if not measure_sheet.has_header(text):
+        raise TextFileError(
+            "This is neither a layout nor a measure sheet. A layout starts with {, a measure "
+            "sheet with the header item,value,over,up,fore."
+        )
+    if len(text.encode()) > measure_sheet.SIZE_LIMIT:
+        raise TextFileError("The file is larger than 2 MB; no car's measures are that long.")
+    return measure_sheet.measure_sheet_from_text(text)

@@ -68,7 +68,7 @@ def test_what_is_written_fits_the_schema(name: str) -> None:
 
 
 def test_the_schema_file_is_the_one_that_the_table_makes() -> None:
-    # To write it anew: put layout_schema_text() into the file.
+    # Written anew by `python -m tests.write_layout_schema`, after any new tolerance or entry.
     file = Path(layout_file.__file__).with_name("layout.schema.json")
     assert file.read_text(encoding="utf-8") == layout_schema_text()
     jsonschema.Draft202012Validator.check_schema(layout_schema())
