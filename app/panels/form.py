@@ -9,7 +9,7 @@ from PySide6.QtCore import Signal
 from PySide6.QtWidgets import QFormLayout, QLabel, QLineEdit, QVBoxLayout, QWidget
 
 from geometry.layout import UnitName
-from geometry.lengths import format_angle_exact, format_exact, parse_angle, parse_length
+from geometry.lengths import format_angle, format_length, parse_angle, parse_length
 from geometry.quantities import Quantity, format_quantity, parse_quantity, unit_of
 
 Kind = Literal["length", "angle", "mass", "rate", "share", "frequency"]
@@ -26,9 +26,9 @@ def _read(kind: Kind, text: str, units: UnitName) -> float:
 
 def _show(kind: Kind, value: float, units: UnitName) -> str:
     if kind == "length":
-        return format_exact(value, units)
+        return format_length(value, units, 64, decimals=2)
     if kind == "angle":
-        return format_angle_exact(value)
+        return format_angle(value)
     quantity: Quantity = kind
     return format_quantity(value, quantity, units)
 

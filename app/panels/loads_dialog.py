@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from dataclasses import replace
 
-from PySide6.QtCore import QTimer
+from PySide6.QtCore import Qt, QTimer
 from PySide6.QtWidgets import QDialog, QDialogButtonBox, QHBoxLayout, QLabel, QVBoxLayout, QWidget
 
 from app.document import Document
@@ -54,6 +54,7 @@ class LoadsDialog(QDialog):
         self.answer = QLabel()
         self.answer.setWordWrap(True)
         self.answer.setMinimumWidth(300)
+        self.answer.setAlignment(Qt.AlignmentFlag.AlignTop)
         self.answer.setAccessibleName("The car in a turn")
         row.addWidget(self.answer, 1)
         column = QVBoxLayout(self)

@@ -1,0 +1,75 @@
+"""Commands that change the whole car: stance, wheel, weights, no-go shapes; and its motion."""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from typing import TYPE_CHECKING
+
+from PySide6.QtCore import QObject
+from PySide6.QtGui import QAction, QKeySequence
+from PySide6.QtWidgets import QDialog, QMenu
+
+from app.motion import BumpMotion
+
+if TYPE_CHECKING:
+    from app.window import MainWindow
+
+
+class LayoutCommands(QObject):
+    """Adds the Layout menu's dialogs to a window. Each dialog's change is one undo step."""
+
+    def __init__(self, window: MainWindow, menu: QMenu) -> None:
+        super().__init__(window)
+        self.window = window
+        self.document = window.document
+        self.actions: dict[str, QAction] = {}
+        menu.addSeparator()
+        for name, words, act, keys in (
+            ("stance", "&Lower or raise…", self.stance, "Ctrl+D"),
+            ("wheel", "&Tire and wheel…", self.wheel, ""),
+            ("loads", "&Weights and springs…", self.loads, ""),
+            ("no-go", "&No-go shapes…", self.no_go, ""),
+        ):
+            self._add(menu, name, words, act, keys)
+        menu.addSeparator()
+        self.motion = BumpMotion(self.document)
+        play = self._add(menu, "play", "&Over a bump", None, "Ctrl+B")
+        play.setCheckable(True)
+        play.toggled.connect(self.motion.toggle)
+        self.motion.running_changed.connect(play.setChecked)
+
+    def _add(
+        self, menu: QMenu, name: str, words: str, act: Callable[[], object] | None, keys: str
+    ) -> QAction:
+        action = QAction(words, self.window)
+        if keys:
+            action.setShortcut(QKeySequence(keys))
+        if act is not None:
+            action.triggered.connect(act)
+        menu.addAction(action)
+        self.actions[name] = action
+        return action
+
+    def _run(self, dialog: QDialog) -> None:
+        dialog.exec()
+        dialog.deleteLater()
+
+    def stance(self) -> None:
+        from app.panels.stance_dialog import StanceDialog
+
+        self._run(StanceDialog(self.document, self.window))
+
+    def wheel(self) -> None:
+        from app.panels.wheel_dialog import WheelDialog
+
+        self._run(WheelDialog(self.document, self.window))
+
+    def loads(self) -> None:
+        from app.panels.loads_dialog import LoadsDialog
+
+        self._run(LoadsDialog(self.document, self.window))
+
+    def no_go(self) -> None:
+        from app.panels.no_go_dialog import NoGoDialog
+
+        self._run(NoGoDialog(self.document, self.window))
