@@ -366,3 +366,16 @@ def needed_points(present: Mapping[str, object]) -> list[str]:
         missing += [name for name in (STRUT_TOP, STRUT_LOWER) if name not in present]
     missing += [name for name in (TIE_INNER, TIE_OUTER, WHEEL_CENTER) if name not in present]
     return missing
+
+
+def clashing_points(present: Mapping[str, object]) -> list[str]:
+    """What a side has two of where it can have one, in words, from the points in ``present``."""
+    clashes = []
+    for arm in ("lower", "upper"):
+        single = f"{arm} inner pivot"
+        if single in present and (f"{single} front" in present or f"{single} rear" in present):
+            clashes.append(f"both “{single}” and its front or rear bushing are given")
+    strut = STRUT_TOP in present or STRUT_LOWER in present
+    if strut and any(name.startswith("upper ") for name in present):
+        clashes.append("both a strut and an upper arm are given")
+    return clashes

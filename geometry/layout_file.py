@@ -29,6 +29,7 @@ from geometry.layout import (
     Spring,
     Target,
     Tire,
+    clashing_points,
     needed_points,
 )
 from geometry.records import (
@@ -66,13 +67,7 @@ class LayoutFileError(ValueError):
 
 def _check_points(present: Mapping[str, Any]) -> list[str]:
     words = [f"the point “{name}” is missing." for name in needed_points(present)]
-    for arm in ("lower", "upper"):
-        single = f"{arm} inner pivot"
-        if single in present and (f"{single} front" in present or f"{single} rear" in present):
-            words.append(f"has both “{single}” and its front or rear bushing; give one kind.")
-    strut = "strut top mount" in present or "strut lower mount" in present
-    if strut and any(name.startswith("upper ") for name in present):
-        words.append("has both a strut and an upper arm; give one of them.")
+    words += [f"{clash}." for clash in clashing_points(present)]
     return words
 
 

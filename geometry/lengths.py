@@ -293,10 +293,4 @@ def shortest_degrees(radians: float) -> Decimal:
         scaled = round(degrees / step)
         if radians_of(scaled * step) == radians:
             break
-    return Decimal(scaled).scaleb(exponent) if scaled % 10 else _trimmed(scaled, exponent)
-
-
-def _trimmed(scaled: int, exponent: int) -> Decimal:
-    while scaled and scaled % 10 == 0:
-        scaled, exponent = scaled // 10, exponent + 1
     return Decimal(scaled).scaleb(exponent)

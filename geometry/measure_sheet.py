@@ -18,8 +18,6 @@ from geometry.layout import (
     RELAY_POINTS,
     SIDE_POINTS,
     SIDES,
-    STRUT_LOWER,
-    STRUT_TOP,
     TIE_OUTER,
     WHEEL_CENTER,
     Job,
@@ -31,6 +29,7 @@ from geometry.layout import (
     SideName,
     Tire,
     UnitName,
+    clashing_points,
     needed_points,
 )
 from geometry.lengths import AngleTextError, LengthTextError, parse_angle, parse_length
@@ -234,7 +233,9 @@ def _missing(reading: _Reading) -> list[str]:
         faults += [
             f"The point “{point}” is missing{where}." for point in needed_points(present)
         ]
-        faults += [f"{words}{where}." for words in _clashes(present)]
+        faults += [
+            f"{clash[:1].upper()}{clash[1:]}{where}." for clash in clashing_points(present)
+        ]
         center = _given(reading, WHEEL_CENTER, name)
         radius = _number(reading, "tire radius", name)
         if radius is None and center is not None and center.get("up", 1.0) <= 0.0:
@@ -246,18 +247,6 @@ def _missing(reading: _Reading) -> list[str]:
         wanted = [name for name in (PITMAN_PIVOT, PITMAN_END) if name not in relay]
         faults += [f"The point “{name}” is missing." for name in wanted]
     return faults
-
-
-def _clashes(present: dict[str, bool]) -> list[str]:
-    out = []
-    for arm in ("lower", "upper"):
-        single = f"{arm} inner pivot"
-        if single in present and (f"{single} front" in present or f"{single} rear" in present):
-            out.append(f"“{single}” and its front or rear bushing are both given")
-    upper = any(name.startswith("upper") for name in present)
-    if upper and (STRUT_TOP in present or STRUT_LOWER in present):
-        out.append("A strut and an upper arm are both given")
-    return out
 
 
 def _given(reading: _Reading, item: str, side: SideName) -> dict[str, float] | None:

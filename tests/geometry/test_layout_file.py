@@ -194,8 +194,8 @@ RANGE = f"{BALL_AT} › over: expected a length in mm from -1,000,000 to 1,000,0
             put("as planned", "left", "points", "lower inner pivot front",
                 value={"over": 1, "up": 2}),
             (
-                "as planned › left › points: has both “lower inner pivot” and its front or rear "
-                "bushing; give one kind."
+                "as planned › left › points: both “lower inner pivot” and its front or rear "
+                "bushing are given."
             ),
         ),
         (
@@ -275,7 +275,7 @@ def test_a_strut_beside_an_upper_arm_is_told() -> None:
     strut = put("as planned", "left", "points", "strut top mount", value={"over": 1, "up": 2})
     assert faults_after(strut) == (
         "as planned › left › points: the point “strut lower mount” is missing.",
-        "as planned › left › points: has both a strut and an upper arm; give one of them.",
+        "as planned › left › points: both a strut and an upper arm are given.",
     )
 
 

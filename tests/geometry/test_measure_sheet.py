@@ -414,10 +414,10 @@ def test_missing_points_are_told_by_name() -> None:
 
 def test_two_kinds_of_one_thing_are_told() -> None:
     assert faults(SHEET + "lower inner pivot front,,9,6,5\n") == (
-        "“lower inner pivot” and its front or rear bushing are both given.",
+        "Both “lower inner pivot” and its front or rear bushing are given.",
     )
     text = SHEET + "strut top mount,,22,33,-1\nstrut lower mount,,24,15,0\n"
-    assert faults(text) == ("A strut and an upper arm are both given.",)
+    assert faults(text) == ("Both a strut and an upper arm are given.",)
 
 
 def test_a_wheel_center_in_the_floor_gives_no_tire_radius() -> None:
