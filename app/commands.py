@@ -12,6 +12,7 @@ from PySide6.QtGui import QAction, QActionGroup, QIcon, QKeySequence
 from PySide6.QtWidgets import QApplication, QMenu, QMessageBox
 
 from app import files, settings, theme
+from app.layout_commands import LayoutCommands
 from app.resources import __version__, data_path
 from geometry.measure_sheet import measure_sheet_from_text, starting_sheet, write_measure_sheet
 
@@ -158,6 +159,7 @@ class Commands(QObject):
         self._add(menu, "keep found", "&Keep as found", self.document.keep_as_found)
         self._add(menu, "from found", "&Plan again from as found", self.document.plan_from_found)
         self.layout_menu = menu
+        self.layout_commands = LayoutCommands(self.window, menu)
 
     def _help_menu(self) -> None:
         menu = self.window.menuBar().addMenu("&Help")
