@@ -185,9 +185,15 @@ def format_readout(unit: Unit, value: float | None, units: Literal["in", "mm"]) 
     if unit == "angle":
         return format_angle(value)
     if unit == "angle per travel":
-        return f"{math.degrees(value) * PER_TRAVEL[units]:+.2f}°"
+        return f"{signed(math.degrees(value) * PER_TRAVEL[units], 2)}°"
     per = value * PER_TRAVEL[units]
-    return f"{per / 25.4:+.3f}" if units == "in" else f"{per:+.2f}"
+    return signed(per / 25.4, 3) if units == "in" else signed(per, 2)
+
+
+def signed(value: float, decimals: int) -> str:
+    """A decimal with its sign; what rounds to nothing has none."""
+    text = f"{value:+.{decimals}f}"
+    return text[1:] if float(text) == 0.0 else text
 
 
 def unit_words(unit: Unit, units: Literal["in", "mm"]) -> str:
