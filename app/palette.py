@@ -23,7 +23,10 @@ BROKEN_DASH = (5.0, 4.0)
 
 @dataclass(frozen=True)
 class Palette:
-    """The floor's colors, as #rrggbb. ``parts`` maps a part's role to (fill, edge)."""
+    """The floor's colors, as #rrggbb.
+
+    ``parts`` maps a part's role to (fill, edge); of a drawn line, (core, edge).
+    """
 
     dark: bool
     floor: str
@@ -63,9 +66,9 @@ _LIGHT_PARTS: dict[str, tuple[str | None, str | None]] = {
     "tire": ("#77746E", "#2B2B2A"),
     "groove": (None, "#3A3937"),
     "window": ("#C9C4BA", "#4A4844"),
-    "rim": (None, "#2F3437"),
+    "rim": ("#8E9599", "#2A3034"),
     "hub": ("#A9ACAD", "#3B4045"),
-    "spring": (None, "#6E7A6C"),
+    "spring": ("#8FA08C", "#3C4A3B"),
     "strut": ("#4E565D", "#20262B"),
     "rod": ("#AEB4B8", "#4A5157"),
     "rack": ("#8D7F75", "#3B332D"),
@@ -80,7 +83,8 @@ _LIGHT_PARTS: dict[str, tuple[str | None, str | None]] = {
     "arm light": ("#8796A3", None),
     "knuckle": ("#7B868F", "#2C343B"),
     "knuckle light": ("#98A3AB", "#4C565E"),
-    "eye": ("#2E3740", "#12171C"),
+    "eye": ("#5B6975", "#1C242B"),
+    "bush": ("#23282D", "#15191D"),
     "joint": ("#39424A", "#171D22"),
 }
 
@@ -88,9 +92,9 @@ _DARK_PARTS: dict[str, tuple[str | None, str | None]] = {
     "tire": ("#55544F", "#B3AFA6"),
     "groove": (None, "#8F8C84"),
     "window": ("#33363A", "#8B8A85"),
-    "rim": (None, "#C9CCCE"),
+    "rim": ("#5A6267", "#C4CACE"),
     "hub": ("#757A7E", "#C4C8CB"),
-    "spring": (None, "#8FA08B"),
+    "spring": ("#6F8A6C", "#C3D2C0"),
     "strut": ("#67727B", "#C5CDD3"),
     "rod": ("#AEB4B8", "#DDE1E4"),
     "rack": ("#77695F", "#CDBFB4"),
@@ -105,16 +109,17 @@ _DARK_PARTS: dict[str, tuple[str | None, str | None]] = {
     "arm light": ("#9DB0C0", None),
     "knuckle": ("#66727C", "#C2CCD4"),
     "knuckle light": ("#84919B", "#B6C0C8"),
-    "eye": ("#38424B", "#B7C2CB"),
+    "eye": ("#6A7B8A", "#C3D0DB"),
+    "bush": ("#22272C", "#9FB0BE"),
     "joint": ("#38424B", "#B7C2CB"),
 }
 
 LIGHT = Palette(
     dark=False,
-    floor="#D9D5CC", grain=7, dot="#B5B0A5", dot_strong="#8E897E",
+    floor="#D9D5CC", grain=4, dot="#B5B0A5", dot_strong="#8E897E",
     chalk="#7FA3D6", chalk_core="#3E6DB5", chalk_text="#2F5592", dust="#FBF9F4",
     arm_string=VERMILLION, contact_string=BLUE, tie_string="#00795A",
-    zone="#BFDCC9", zone_edge="#2E8B63", no_go="#E5C2B8",
+    zone="#BFDCC9", zone_edge="#2E8B63", no_go="#B4705C",
     ink="#22262A", mark_fill="#F7F4ED",
     tape="#F2CE3E", tape_edge="#A98708", tape_ink="#28230C", tape_red="#C01818",
     tag="#F3E7C3", tag_edge="#C9B47C", tag_ink="#2B2618", tag_quiet="#6A6046",
@@ -125,10 +130,10 @@ LIGHT = Palette(
 
 DARK = Palette(
     dark=True,
-    floor="#2B2D2F", grain=5, dot="#4B4E51", dot_strong="#777B7F",
+    floor="#2B2D2F", grain=4, dot="#4B4E51", dot_strong="#777B7F",
     chalk="#3F5F92", chalk_core="#7FA8E8", chalk_text="#A9C5F2", dust="#7C7A74",
     arm_string="#FF8A3D", contact_string="#56B4E9", tie_string="#37D0A0",
-    zone="#27463A", zone_edge="#55C79A", no_go="#55362E",
+    zone="#27463A", zone_edge="#55C79A", no_go="#A8664F",
     ink="#ECEAE4", mark_fill="#1E2022",
     tape="#C9A92B", tape_edge="#6E5A0C", tape_ink="#1E1A08", tape_red="#9C0F0F",
     tag="#4A442F", tag_edge="#7C7148", tag_ink="#F6EFD8", tag_quiet="#CFC49B",

@@ -22,12 +22,12 @@ from geometry.standing import XY, Standing, relay_standing, standing
 Role = Literal[
     "tire", "groove", "window", "rim", "hub", "spring", "strut", "rod", "tie", "tie light",
     "rack", "rack light", "bellows", "clamp", "relay", "relay light", "arm", "arm light",
-    "knuckle", "knuckle light", "eye", "joint",
+    "knuckle", "knuckle light", "eye", "bush", "joint",
 ]
 ROLES: tuple[Role, ...] = (
     "tire", "groove", "window", "rim", "hub", "spring", "strut", "rod", "rack", "rack light",
     "bellows", "clamp", "relay", "relay light", "tie", "tie light", "arm", "arm light",
-    "knuckle", "knuckle light", "eye", "joint",
+    "knuckle", "knuckle light", "eye", "bush", "joint",
 )
 """Every role from the back to the front."""
 
@@ -61,12 +61,11 @@ def front_parts(solution: Solution) -> list[Part]:
 
 def side_parts(stand: Standing) -> list[Part]:
     """The parts of one side."""
-    made = [
+    return [
         Part(stand.side, role, outline)
         for role, outline in _side_outlines(stand)
         if bool(np.isfinite(outline).all())
     ]
-    return made
 
 
 def _side_outlines(stand: Standing) -> Iterator[tuple[Role, Array]]:
@@ -134,6 +133,7 @@ def _arm(points: dict[str, XY], arm: str) -> Iterator[tuple[Role, Array]]:
         yield "arm light", shapes.sheen(bushing, ball, 0.9 * size)
     for bushing in bushings:
         yield "eye", shapes.circle(bushing, 1.42 * size)
+        yield "bush", shapes.circle(bushing, 0.92 * size)
     yield "joint", shapes.circle(ball, 1.25 * size)
 
 

@@ -65,7 +65,10 @@ def instant_center(solution: Solution, side: SideName) -> InstantCenter | None:
 
 
 def strings(solution: Solution, both: dict[SideName, Standing]) -> list[String]:
-    """Every string of a car whose parts meet, in its chosen pose."""
+    """Every string of a car whose parts meet, in its chosen pose.
+
+    Arms and tie rods show their own line, so their strings start where the part ends.
+    """
     out: list[String] = []
     for side in SIDES:
         if both[side].meets:
@@ -76,30 +79,35 @@ def strings(solution: Solution, both: dict[SideName, Standing]) -> list[String]:
 def _side_strings(solution: Solution, stand: Standing) -> list[String]:
     view, points = stand.state.now_view, stand.points
     center = instant_center(solution, stand.side)
-    seen = None if center is None else center.seen
-    lines = []
+    if center is None:
+        return []
+    strut = stand.state.side.is_strut
     lower = [points[names.LOWER_BALL], *_bushings(points, "lower")]
-    lines.append(("arm", _along(view.lower_line[:, 0], stand.sign, lower, seen)))
-    if stand.state.side.is_strut:
-        upper = [points[names.STRUT_TOP]]
-    else:
-        upper = [points[names.UPPER_BALL], *_bushings(points, "upper")]
-    lines.append(("arm", _along(view.upper_line[:, 0], stand.sign, upper, seen)))
+    upper = (
+        [points[names.STRUT_TOP]]
+        if strut
+        else [points[names.UPPER_BALL], *_bushings(points, "upper")]
+    )
     roll = solution.roll_center_place
-    contact = [stand.contact] if roll is None else [stand.contact, roll]
-    lines.append(("contact", _along(view.contact_line[:, 0], stand.sign, contact, seen)))
+    contact = [stand.contact, center.seen, *([] if roll is None else [roll])]
     outer, inner = points[names.TIE_OUTER], points[names.TIE_INNER]
-    way = (inner[0] - outer[0], inner[1] - outer[1])
-    size = math.hypot(*way)
-    if size > 1e-6:
-        a, b = -way[1] / size, way[0] / size
-        line = np.array([a * stand.sign, b, -(a * outer[0] + b * outer[1])])
-        lines.append(("tie", _along(line, stand.sign, [outer, inner], seen)))
-    return [
-        String(stand.side, kind, *ends)  # type: ignore[arg-type]
-        for kind, ends in lines
-        if ends is not None
+    found: list[tuple[StringKind, tuple[XY, XY] | None]] = [
+        ("arm", _from_end(view.lower_line[:, 0], stand.sign, lower, center)),
+        ("arm", _from_end(view.upper_line[:, 0], stand.sign, upper, center)),
+        ("contact", _through(view.contact_line[:, 0], stand.sign, contact)),
+        ("tie", _from_end(_line_of(outer, inner, stand.sign), stand.sign, [outer, inner], center)),
     ]
+    return [String(stand.side, kind, *ends) for kind, ends in found if ends is not None]
+
+
+def _line_of(a: XY, b: XY, sign: float) -> Array:
+    """The line (3,) through two places on the floor, in a side's measure; NaN if they are one."""
+    dx, dy = b[0] - a[0], b[1] - a[1]
+    size = math.hypot(dx, dy)
+    if size < 1e-6:
+        return np.full(3, np.nan)
+    p, q = -dy / size, dx / size
+    return np.array([p * sign, q, -(p * a[0] + q * a[1])])
 
 
 def _bushings(points: dict[str, XY], arm: str) -> list[XY]:
@@ -107,30 +115,55 @@ def _bushings(points: dict[str, XY], arm: str) -> list[XY]:
     return [points[name] for name in found if name in points]
 
 
-def _along(
-    line: Array, sign: float, places: list[XY], seen: XY | None
-) -> tuple[XY, XY] | None:
-    """The stretch of a line (a, b, c), in side measure, that passes all places' feet on it."""
+def _feet(line: Array, sign: float, places: list[XY]) -> tuple[list[XY], list[float]] | None:
+    """The feet of places on a line (a, b, c) in side measure, and how far along it they lie."""
     a, b, c = sign * float(line[0]), float(line[1]), float(line[2])
     if not math.isfinite(a + b + c):
         return None
     feet = []
-    for x, y in [*places, seen] if seen is not None else places:
+    for x, y in places:
         off = a * x + b * y + c
         feet.append((x - off * a, y - off * b))
-    along = [b * x - a * y for x, y in feet]
-    start, end = feet[along.index(min(along))], feet[along.index(max(along))]
-    if math.hypot(end[0] - start[0], end[1] - start[1]) < 1e-6:
+    return feet, [b * x - a * y for x, y in feet]
+
+
+def _through(line: Array, sign: float, places: list[XY]) -> tuple[XY, XY] | None:
+    """The stretch of a line that passes all places' feet, from the end near the first."""
+    found = _feet(line, sign, places)
+    if found is None:
         return None
-    # Strings start at the wheel, so that their dashes stay put while the center wanders.
-    return (start, end) if abs(start[0] - places[0][0]) < abs(end[0] - places[0][0]) else (end, start)
+    feet, along = found
+    low, high = along.index(min(along)), along.index(max(along))
+    if along[high] - along[low] < 1e-6:
+        return None
+    near_low = along[0] - along[low] <= along[high] - along[0]
+    return (feet[low], feet[high]) if near_low else (feet[high], feet[low])
 
 
-def inner_pivot_places(stand: Standing) -> dict[str, XY]:
+def _from_end(
+    line: Array, sign: float, places: list[XY], center: InstantCenter
+) -> tuple[XY, XY] | None:
+    """From the part's end that is nearest to the instant center, on to the center's foot.
+
+    A tie rod's line seldom meets the instant center: how far it passes by is what it shows.
+    """
+    found = _feet(line, sign, [*places, center.seen])
+    if found is None:
+        return None
+    feet, along = found
+    nearest = min(range(len(places)), key=lambda k: abs(along[k] - along[-1]))
+    if abs(along[nearest] - along[-1]) < 1e-6:
+        return None
+    return feet[nearest], feet[-1]
+
+
+def inner_pivot_places(solution: Solution, stand: Standing) -> dict[str, XY]:
     """The three places for the inner tie-rod pivot, moved along with the steering."""
     out = {}
+    # A mirrored side has the same places in its own measures; they are costly to find.
+    state = solution.left if solution.layout.linked else stand.state
     for kind in PIVOT_KINDS[1:]:
-        place = stand.state.pivots.places.get(kind)
+        place = state.pivots.places.get(kind)
         if place is not None:
             x, y = stand.at(*place)
             out[kind] = (x + stand.shift[0], y + stand.shift[1])

@@ -6,9 +6,13 @@ Works in any unit (pixels on the screen, mm on paper) with y in either direction
 from __future__ import annotations
 
 import math
-from collections.abc import Iterable, Mapping, Sequence
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from typing import NamedTuple
+
+import numpy as np
+
+from geometry.linkage import Array
 
 
 class Box(NamedTuple):
@@ -48,19 +52,13 @@ class Box(NamedTuple):
             and other.bottom <= self.bottom + 1e-9
         )
 
-    def clamped(self, area: Box) -> Box:
-        """The same size moved into the area as far as it fits."""
-        left = min(max(self.left, area.left), max(area.right - self.width, area.left))
-        top = min(max(self.top, area.top), max(area.bottom - self.height, area.top))
-        return self._replace(left=left, top=top)
-
 
 @dataclass(frozen=True)
 class Label:
-    """A label for one anchor. ``clear`` is the radius of the mark that must stay visible.
+    """A label for one anchor. ``clear`` is the radius of the mark that should stay visible.
 
-    An anchor outside the area is taken to its edge. ``must`` labels are kept even where
-    that hides soft obstacles; any label may be left out when there is no room at all.
+    An anchor outside the area is taken to its edge. ``edge`` labels stand against the edge
+    that their anchor is at and only slide along it while there is room.
     """
 
     key: str
@@ -68,26 +66,26 @@ class Label:
     width: float
     height: float
     clear: float = 8.0
+    edge: bool = False
 
 
-_DIRECTIONS = (
-    (1.0, -0.6), (-1.0, -0.6), (1.0, 0.6), (-1.0, 0.6), (0.0, -1.0), (0.0, 1.0), (1.0, 0.0),
-    (-1.0, 0.0),
+GAP = 3.0
+"""Clear room kept between two labels."""
+
+_SOFT, _MARK, _FALLBACK, _HABIT = 60.0, 90.0, 200.0, 12.0
+_DIRECTIONS = np.array(
+    [(1.0, -0.6), (-1.0, -0.6), (1.0, 0.6), (-1.0, 0.6), (0.0, -1.0), (0.0, 1.0), (1.0, 0.0),
+     (-1.0, 0.0)]
 )
-_RINGS = (0.0, 14.0, 30.0, 52.0, 84.0, 130.0)
-_GAP = 3.0
-
-
-def _around(label: Label, anchor: tuple[float, float], ring: float) -> Iterable[Box]:
-    """Boxes beside the anchor in eight directions, ``ring`` beyond its mark."""
-    x, y = anchor
-    reach = label.clear + ring
-    for dx, dy in _DIRECTIONS:
-        size = math.hypot(dx, dy)
-        px, py = x + reach * dx / size, y + reach * dy / size
-        left = px if dx > 0 else px - label.width if dx < 0 else px - 0.5 * label.width
-        top = py if dy > 0 else py - label.height if dy < 0 else py - 0.5 * label.height
-        yield Box(left, top, label.width, label.height)
+_RINGS = np.array([0.0, 14.0, 30.0, 52.0, 84.0, 130.0])
+_WAYS = np.tile(_DIRECTIONS / np.hypot(*_DIRECTIONS.T)[:, None], (_RINGS.size, 1))
+_REACHES = np.repeat(_RINGS, len(_DIRECTIONS))
+# A box stands beyond its place in the direction it was sent to.
+_SHARES = np.tile(np.where(_DIRECTIONS > 0, 0.0, np.where(_DIRECTIONS < 0, 1.0, 0.5)),
+                  (_RINGS.size, 1))
+_COSTS = _REACHES + 2.0 * np.tile(np.arange(len(_DIRECTIONS)), _RINGS.size)
+_SLIDES = np.concatenate([[0.0], np.repeat(np.arange(6.0, 300.0, 6.0), 2)])
+_SLIDES[2::2] *= -1.0
 
 
 def place_labels(
@@ -100,72 +98,97 @@ def place_labels(
     """A box for each label, first ones first; a label without room is left out.
 
     No box overlaps another, a ``hard`` box, or leaves ``area``; ``soft`` boxes are avoided
-    where there is a choice. ``before`` holds each label's last offset from its anchor, and
-    a label stays there if that is nearly as good, so that labels don't jump about.
+    where there is a choice. ``before`` holds each label's last offset (left, top) from its
+    anchor, and a label stays there if that is nearly as good, so that labels don't jump.
     """
-    taken = list(hard)
+    taken = _rows(hard)
+    shy = _rows(soft)
     out: dict[str, Box] = {}
     for label in labels:
         if label.width > area.width or label.height > area.height:
             continue
-        box = _best(label, area, soft, taken, (before or {}).get(label.key))
+        box = _best(label, area, shy, taken, (before or {}).get(label.key))
         if box is not None:
             out[label.key] = box
-            taken.append(box.grown(_GAP))
+            taken = np.vstack([taken, _rows([box.grown(GAP)])])
     return out
 
 
+def _rows(boxes: Sequence[Box]) -> Array:
+    """Boxes as rows of left, top, right, bottom (n, 4)."""
+    rows = np.array(boxes, dtype=float).reshape(-1, 4)
+    rows[:, 2:] += rows[:, :2]
+    return rows
+
+
+def _overlaps(lefts_tops: Array, size: Array, others: Array) -> np.ndarray:
+    """(n, m) bool: which of n boxes of one size overlap which of m others."""
+    low = lefts_tops[:, None, :]
+    return np.asarray(
+        ((low < others[None, :, 2:]) & (low + size > others[None, :, :2])).all(axis=2)
+    )
+
+
 def _best(
-    label: Label,
-    area: Box,
-    soft: Sequence[Box],
-    taken: Sequence[Box],
-    before: tuple[float, float] | None,
+    label: Label, area: Box, soft: Array, taken: Array, before: tuple[float, float] | None
 ) -> Box | None:
     x = min(max(label.anchor[0], area.left), area.right)
     y = min(max(label.anchor[1], area.top), area.bottom)
-    mark = Box(x, y, 0.0, 0.0).grown(0.7 * label.clear)
-    best: tuple[float, Box] | None = None
-
-    def consider(raw: Box, cost: float) -> None:
-        nonlocal best
-        box = raw.clamped(area)
-        cost += 0.5 * (abs(box.left - raw.left) + abs(box.top - raw.top))
-        if best is not None and cost >= best[0]:
-            return
-        if any(box.overlaps(other) for other in taken) or not area.holds(box):
-            return
-        cost += 60.0 * sum(box.overlaps(other) for other in soft)
-        if box.overlaps(mark):
-            cost += 90.0
-        if best is None or cost < best[0]:
-            best = cost, box
-
-    if before is not None:
-        consider(Box(x + before[0], y + before[1], label.width, label.height),
-                 0.5 * math.hypot(*_gap(before, label)) - 12.0)
-    for ring in _RINGS:
-        for rank, box in enumerate(_around(label, (x, y), ring)):
-            consider(box, ring + 2.0 * rank)
-        if best is not None and best[0] < ring + 14.0:
-            break
-    if best is None:
-        for box in _grid(label, area):
-            consider(box, 200.0 + math.hypot(box.left - x, box.top - y))
-    return None if best is None else best[1]
+    anchor, size = np.array([x, y]), np.array([label.width, label.height])
+    if label.edge:
+        places, costs = _along_edge(anchor, size, area)
+    else:
+        places = anchor + (label.clear + _REACHES)[:, None] * _WAYS - _SHARES * size
+        costs = _COSTS.copy()
+        if before is not None:
+            places = np.vstack([places, anchor + before])
+            off = np.maximum(np.maximum(before, -np.asarray(before) - size), 0.0)
+            costs = np.append(costs, 0.8 * float(np.hypot(*off)) - _HABIT)
+    index = _cheapest(label, anchor, size, area, places, costs, soft, taken)
+    if index is None:
+        places = _grid(label, area)
+        costs = _FALLBACK + np.hypot(*(places - anchor).T)
+        index = _cheapest(label, anchor, size, area, places, costs, soft, taken)
+    return None if index is None else Box(*index, label.width, label.height)
 
 
-def _gap(offset: tuple[float, float], label: Label) -> tuple[float, float]:
-    """How far a box at an offset stands from its anchor, per axis."""
-    dx = max(offset[0], -offset[0] - label.width, 0.0)
-    dy = max(offset[1], -offset[1] - label.height, 0.0)
-    return dx, dy
+def _cheapest(
+    label: Label, anchor: Array, size: Array, area: Box, places: Array, costs: Array,
+    soft: Array, taken: Array,
+) -> tuple[float, float] | None:
+    """The cheapest place (left, top) that is free, after moving each into the area."""
+    low = np.array([area.left, area.top])
+    inside = np.clip(places, low, np.array([area.right, area.bottom]) - size)
+    costs = costs + 0.5 * np.abs(inside - places).sum(axis=1)
+    free = ~_overlaps(inside, size, taken).any(axis=1)
+    if not free.any():
+        return None
+    costs = costs + _SOFT * _overlaps(inside, size, soft).sum(axis=1)
+    mark = 0.7 * label.clear
+    around = np.concatenate([anchor - mark, anchor + mark])[None, :]
+    costs = costs + (0.0 if label.edge else _MARK) * _overlaps(inside, size, around)[:, 0]
+    best = int(np.argmin(np.where(free, costs, math.inf)))
+    return float(inside[best, 0]), float(inside[best, 1])
 
 
-def _grid(label: Label, area: Box) -> Iterable[Box]:
-    """Boxes all over the area, for a label with no room near its anchor."""
-    rows = max(int((area.height - label.height) // 8), 0)
-    columns = max(int((area.width - label.width) // 24), 0)
-    for row in range(rows + 1):
-        for column in range(columns + 1):
-            yield Box(area.left + 24 * column, area.top + 8 * row, label.width, label.height)
+def _along_edge(anchor: Array, size: Array, area: Box) -> tuple[Array, Array]:
+    """Places against the area's edge nearest to the anchor, sliding along it."""
+    gaps = (
+        anchor[0] - area.left, area.right - anchor[0], anchor[1] - area.top,
+        area.bottom - anchor[1],
+    )
+    start = anchor - 0.5 * size
+    upright = int(np.argmin(gaps)) < 2
+    slide = np.stack([0.0 * _SLIDES, _SLIDES], axis=1) if upright else np.stack(
+        [2.0 * _SLIDES, 0.0 * _SLIDES], axis=1
+    )
+    start[0] = (area.left, area.right - size[0], start[0], start[0])[int(np.argmin(gaps))]
+    start[1] = (start[1], start[1], area.top, area.bottom - size[1])[int(np.argmin(gaps))]
+    return start + slide, np.abs(_SLIDES)
+
+
+def _grid(label: Label, area: Box) -> Array:
+    """Places all over the area (n, 2), for a label with no room near its anchor."""
+    lefts = np.arange(area.left, area.right - label.width + 1e-9, 24.0)
+    tops = np.arange(area.top, area.bottom - label.height + 1e-9, 8.0)
+    return np.stack(np.meshgrid(lefts, tops), axis=-1).reshape(-1, 2)

@@ -25,7 +25,7 @@ def _unit_arc(start: float, end: float, steps: int) -> Array:
     return np.column_stack([np.cos(angles), np.sin(angles)])
 
 
-def circle(center: Pair, radius: float, steps: int = 24) -> Array:
+def circle(center: Pair, radius: float, steps: int = 36) -> Array:
     """A circle's outline (steps, 2)."""
     around = _unit_arc(0.0, math.tau * (1 - 1 / steps), steps)
     return np.asarray(center, dtype=float) + radius * around
@@ -81,6 +81,7 @@ def carried(local: Array, origin: Pair, axis: Pair) -> Array:
     )
 
 
+@lru_cache(maxsize=32)
 def tire(radius: float, width: float) -> Array:
     """A tire seen from the front, x along the axle, y up in the wheel's plane.
 
@@ -96,6 +97,7 @@ def tire(radius: float, width: float) -> Array:
     return np.vstack([upper, -upper])
 
 
+@lru_cache(maxsize=32)
 def grooves(radius: float, width: float) -> list[Array]:
     """Tread grooves' edges at the top and bottom of a tire, as short lines (2, 2)."""
     out = []
@@ -112,25 +114,29 @@ def rim_radius(radius: float, rim_diameter: float) -> float:
     return max(min(0.5 * rim_diameter, 0.84 * radius), 0.0)
 
 
+@lru_cache(maxsize=32)
 def rim_window(radius: float, rim_diameter: float, rim_width: float) -> Array:
     """What is open to look through between the beads: a rectangle (4, 2)."""
     high, half = rim_radius(radius, rim_diameter), 0.5 * rim_width
     return np.array([(half, high), (-half, high), (-half, -high), (half, -high)])
 
 
+@lru_cache(maxsize=32)
 def rim_line(radius: float, rim_diameter: float, rim_width: float, upper: bool) -> Array:
     """The rim's cut edge from the outboard to the inboard flange, an open line (10, 2)."""
     bead, half = rim_radius(radius, rim_diameter), 0.5 * rim_width
     flange, drop = min(bead + 15.0, 0.94 * radius), 0.88 * bead
     sign = 1.0 if upper else -1.0
     shape = [
-        (half + 5.0, flange - 3.0), (half, flange), (half - 3.0, bead), (0.3 * rim_width, bead - 2.0),
+        (half + 5.0, flange - 3.0), (half, flange), (half - 3.0, bead),
+        (0.3 * rim_width, bead - 2.0),
         (0.2 * rim_width, drop), (-0.2 * rim_width, drop), (-0.32 * rim_width, bead - 2.0),
         (3.0 - half, bead), (-half, flange), (-half - 5.0, flange - 3.0),
     ]
     return np.array(shape) * (1.0, sign)
 
 
+@lru_cache(maxsize=32)
 def disc_line(radius: float, rim_diameter: float, rim_width: float, offset: float) -> Array:
     """The wheel disc's cut edge from rim to rim through its mounting face, open (6, 2)."""
     drop = 0.88 * rim_radius(radius, rim_diameter)
@@ -143,6 +149,7 @@ def disc_line(radius: float, rim_diameter: float, rim_width: float, offset: floa
     )
 
 
+@lru_cache(maxsize=32)
 def hub(offset: float, rim_width: float, radius: float) -> Array:
     """The hub behind the wheel's mounting face, a stepped outline (8, 2)."""
     face = min(max(offset, -0.45 * rim_width), 0.45 * rim_width)

@@ -7,7 +7,6 @@ from functools import lru_cache
 import numpy as np
 from PySide6.QtCore import QPointF, QRect, QRectF, Qt, Signal
 from PySide6.QtGui import (
-    QColor,
     QImage,
     QPainter,
     QPixmap,
@@ -185,7 +184,7 @@ class Canvas(QGraphicsView):
 
     def _paint_dots(self, painter: QPainter, port: QRect, origin: QPointF, dots: float) -> None:
         fine, strong = _DOTS[self.unit]
-        for step, color, size in ((fine, self.look.dot, 1.6), (strong, self.look.dot_strong, 2.8)):
+        for step, color, size in ((fine, self.look.dot, 1.8), (strong, self.look.dot_strong, 3.6)):
             if step * dots < 7.0:
                 continue
             painter.setPen(pen(color, size))
@@ -208,8 +207,8 @@ class Canvas(QGraphicsView):
         )
         for width, color, dash in haze:
             painter.setPen(pen(color, width, dash))
-            for start, end in lines:
-                painter.drawLine(start, end)
+            for line in lines:
+                painter.drawLine(*line)
         along, beside = _powder()
         painter.setPen(pen(mixed(look.floor, look.chalk, 0.75), 1.1))
         points = []

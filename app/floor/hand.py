@@ -4,12 +4,12 @@ from __future__ import annotations
 
 import math
 from dataclasses import dataclass
-from typing import TYPE_CHECKING, Literal
+from typing import TYPE_CHECKING
 
 from PySide6.QtCore import QPointF, Qt
 from PySide6.QtGui import QKeyEvent, QMouseEvent
 
-from app.floor.nails import REACH, Key, nearest
+from app.floor.nails import Key
 from geometry.layout import Point
 from geometry.standing import XY, sign_of
 from geometry.tape import nudged, snapped
@@ -199,7 +199,8 @@ class Hand:
         if key == Qt.Key.Key_Escape:
             return self._escape()
         if key in _ARROWS:
-            return self._arrow(_ARROWS[key], event.modifiers() & ~Qt.KeyboardModifier.KeypadModifier)
+            keypad = Qt.KeyboardModifier.KeypadModifier
+            return self._arrow(_ARROWS[key], event.modifiers() & ~keypad)
         plain = event.modifiers() == _NONE
         if key in (Qt.Key.Key_Return, Qt.Key.Key_Enter, Qt.Key.Key_F2) and plain:
             return self._enter()

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import numpy as np
 from PySide6.QtCore import QLineF, QPointF, QRectF, Qt
-from PySide6.QtGui import QPainterPath
+from PySide6.QtGui import QBrush, QColor, QPainterPath
 from PySide6.QtWidgets import (
     QGraphicsItem,
     QGraphicsLineItem,
@@ -21,7 +21,7 @@ from geometry.shapes import clipped
 from geometry.standing import XY
 
 STRINGS_Z = 30.0
-ZONE_Z = 8.0
+ZONE_Z = 28.0
 MARKS_Z = 40.0
 
 _KINDS: tuple[StringKind, ...] = ("contact", "arm", "tie")
@@ -158,11 +158,11 @@ def _quartered() -> tuple[QPainterPath, QPainterPath]:
 
 def _pivot(kind: str) -> tuple[QPainterPath, QPainterPath]:
     ring, solid = QPainterPath(), QPainterPath()
-    ring.addEllipse(QPointF(0, 0), 5.5, 5.5)
+    ring.addEllipse(QPointF(0, 0), 6.5, 6.5)
     if kind == "curvature center":
-        solid.addEllipse(QPointF(0, 0), 5.5, 5.5)
+        solid.addEllipse(QPointF(0, 0), 6.5, 6.5)
     elif kind == "best fit":
-        solid.addEllipse(QPointF(0, 0), 2.2, 2.2)
+        solid.addEllipse(QPointF(0, 0), 2.4, 2.4)
     return ring, solid
 
 
@@ -198,7 +198,10 @@ class MarkItems:
         for mark in self.pivots.values():
             mark.dress(palette.tie_string, ground, palette.tie_string, 1.8)
         for zone in self.zones.values():
-            zone.setBrush(brush(palette.zone))
+            # See-through, as it lies over the rack; it is small, so that this costs little.
+            tint = QColor(palette.zone)
+            tint.setAlphaF(0.62)
+            zone.setBrush(QBrush(tint))
             zone.setPen(pen(palette.zone_edge, 1.2 * ratio, (3.0, 2.0)))
 
     def set_zone(self, side: SideName, outlines: list[Array]) -> None:

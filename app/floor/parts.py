@@ -4,11 +4,11 @@ from __future__ import annotations
 
 from collections import defaultdict
 
-from PySide6.QtGui import QBrush, QPainterPath, QPen
+from PySide6.QtGui import QBrush, QColor, QLinearGradient, QPainterPath, QPen
 from PySide6.QtWidgets import QGraphicsPathItem, QGraphicsScene
 
 from app.floor.paths import NO_BRUSH, NO_PEN, brush, path_of, pen
-from app.palette import BROKEN_DASH, CHALK_DASH, Palette
+from app.palette import BROKEN_DASH, CHALK_DASH, Palette, mixed
 from geometry.front_parts import OPEN_ROLES, ROLES, Part, Role
 from geometry.layout import SIDES, SideName
 from geometry.linkage import Array
@@ -17,10 +17,22 @@ PARTS_Z = 10.0
 FOUND_Z = 5.0
 
 OWNERS: tuple[SideName | None, ...] = (None, *SIDES)
-_WIDTHS: dict[str, float] = {"tire": 1.8, "groove": 1.2, "rim": 1.9, "spring": 3.0}
-_FUSED = frozenset({"knuckle", "arm", "relay"})
+_WIDTHS: dict[str, float] = {"tire": 1.8, "groove": 1.2}
+_BARS: dict[str, float] = {"rim": 5.0, "spring": 11.0}
+"""Roles that are bars of this thickness, mm, drawn as a line in a line."""
+_FUSED = frozenset({"knuckle", "arm", "relay", *_BARS})
 """Roles whose outlines melt into one: drawn first with an edge, then filled over it."""
 _FOUND_ROLES = ("tire", "arm", "knuckle", "tie", "strut", "rack", "relay")
+
+
+def rounded(color: str, dark: bool) -> QBrush:
+    """A brush that makes a flat outline look round: light from the upper left."""
+    light, shade = mixed(color, "#FFFFFF", 0.10 if dark else 0.16), mixed(color, "#000000", 0.30)
+    across = QLinearGradient(0.0, 0.0, 1.0, 0.0)
+    across.setCoordinateMode(QLinearGradient.CoordinateMode.ObjectMode)
+    for at, tone in ((0.0, shade), (0.22, color), (0.40, light), (0.62, color), (1.0, shade)):
+        across.setColorAt(at, QColor(tone))
+    return QBrush(across)
 
 
 class PartItems:
@@ -57,10 +69,14 @@ class PartItems:
         for role, (fill, edge) in palette.parts.items():
             width = _WIDTHS.get(role, 1.3) * ratio
             self._pens[role] = NO_PEN if edge is None else pen(edge, width)
-            if role in _FUSED and edge is not None:
+            if role in _BARS and edge is not None and fill is not None:
+                self._pens[role] = pen(edge, _BARS[role], cosmetic=False)
+                self._pens[f"{role} core"] = pen(fill, 0.5 * _BARS[role], cosmetic=False)
+            elif role in _FUSED and edge is not None:
                 # Half of it disappears under the fill.
                 self._pens[role] = pen(edge, 2.0 * width)
-            self._brushes[role] = brush(fill)
+            self._brushes[role] = NO_BRUSH if role in _BARS else brush(fill)
+        self._brushes["tire"] = rounded(palette.parts["tire"][0] or palette.floor, palette.dark)
         self._pens["broken"] = pen(palette.broken, 1.4 * ratio, BROKEN_DASH)
         self.found.setPen(pen(palette.dust, 2.2 * ratio, CHALK_DASH))
         for owner in OWNERS:
@@ -76,7 +92,8 @@ class PartItems:
                 items[0].setPen(self._pens[role])
                 items[0].setBrush(self._brushes[role])
             for over in items[1:]:
-                over.setPen(NO_PEN)
+                core = self._pens.get(f"{role} core", NO_PEN)
+                over.setPen(NO_PEN if self._broken[owner] else core)
                 over.setBrush(NO_BRUSH if self._broken[owner] else self._brushes[role])
 
     def show(self, parts: list[Part], broken: set[SideName]) -> None:

@@ -4,10 +4,8 @@ from __future__ import annotations
 
 from collections.abc import Iterable, Sequence
 
-import numpy as np
-from pyqtgraph import arrayToQPath
-from PySide6.QtCore import Qt
-from PySide6.QtGui import QBrush, QColor, QPainterPath, QPen
+from PySide6.QtCore import QPointF, Qt
+from PySide6.QtGui import QBrush, QColor, QPainterPath, QPen, QPolygonF
 
 from geometry.linkage import Array
 
@@ -34,22 +32,11 @@ def brush(color: str | None) -> QBrush:
 
 def path_of(outlines: Iterable[Array], closed: bool) -> QPainterPath:
     """One path of many outlines (n, 2), filled as one piece where they overlap."""
-    rows: list[Array] = []
-    joined: list[Array] = []
-    for outline in outlines:
-        line = np.vstack([outline, outline[:1]]) if closed else outline
-        join = np.ones(len(line), dtype=np.int32)
-        join[-1] = 0
-        rows.append(line)
-        joined.append(join)
-    if not rows:
-        return QPainterPath()
-    points = np.concatenate(rows)
-    path = arrayToQPath(
-        np.ascontiguousarray(points[:, 0]),
-        np.ascontiguousarray(points[:, 1]),
-        connect=np.concatenate(joined),
-        finiteCheck=False,
-    )
+    path = QPainterPath()
     path.setFillRule(Qt.FillRule.WindingFill)
+    for outline in outlines:
+        points = [QPointF(x, y) for x, y in outline.tolist()]
+        path.addPolygon(QPolygonF(points))
+        if closed:
+            path.closeSubpath()
     return path

@@ -2,6 +2,9 @@
 
 from __future__ import annotations
 
+from typing import Any
+
+import numpy as np
 from PySide6.QtGui import QFont
 from PySide6.QtWidgets import QGraphicsScene
 
@@ -14,6 +17,7 @@ from app.palette import Palette
 from geometry.front_parts import car_parts, side_parts
 from geometry.front_strings import (
     InstantCenter,
+    String,
     inner_pivot_places,
     instant_center,
     strings,
@@ -42,9 +46,10 @@ class FloorScene(QGraphicsScene):
         self.roll: XY | None = None
         self.gravity: XY | None = None
         self.pivots: dict[tuple[SideName, str], XY] = {}
-        self._strings: list = []
+        self._strings: list[String] = []
         self._tire_floor: tuple[XY, XY] | None = None
         self._zones: dict[SideName, list[Array]] = {}
+        self._found_shown: tuple[object, ...] | None = None
 
     def dress(self, palette: Palette, font: QFont, ratio: float) -> None:
         self.parts.dress(palette, ratio)
@@ -54,7 +59,7 @@ class FloorScene(QGraphicsScene):
         self.nails.dress(palette)
         self.tags.dress(palette, font, ratio)
 
-    def follow(self, solution: Solution, outline: Solution | None, chosen: Key | None) -> None:
+    def follow(self, solution: Solution, outline: Solution | None) -> None:
         """Move everything to where a solution has it."""
         both = {side: standing(solution, side) for side in SIDES}
         self.stands = both
@@ -74,8 +79,14 @@ class FloorScene(QGraphicsScene):
 
     def _follow_found(self, solution: Solution, outline: Solution | None) -> None:
         if outline is None or _same_car(solution, outline):
+            self._found_shown = None
             self.parts.show_found(None)
             return
+        # While one car is dragged the other stands still.
+        stance = outline.layout, tuple(outline.travel.values()), outline.rack
+        if stance == self._found_shown:
+            return
+        self._found_shown = stance
         both = {side: standing(outline, side) for side in SIDES}
         found = [part for stand in both.values() for part in side_parts(stand)]
         self.parts.show_found(found + car_parts(outline, both))
@@ -99,7 +110,8 @@ class FloorScene(QGraphicsScene):
         self.pivots = {
             (side, kind): place
             for side in SIDES
-            for kind, place in inner_pivot_places(both[side]).items()
+            if both[side].meets
+            for kind, place in inner_pivot_places(solution, both[side]).items()
             if _near(place)
         }
         for key, mark in self.marks.pivots.items():
@@ -134,3 +146,18 @@ def _same_car(a: Solution, b: Solution) -> bool:
         and a.layout.right == b.layout.right
         and a.layout.steering == b.layout.steering
     )
+
+
+def zone_outlines(polygons: Any) -> list[Array]:
+    """Shapely geometry or arrays as a list of (n, 2) outlines, holes included."""
+    if polygons is None:
+        return []
+    if hasattr(polygons, "geoms"):
+        return [ring for part in polygons.geoms for ring in zone_outlines(part)]
+    if hasattr(polygons, "exterior"):
+        if polygons.is_empty:
+            return []
+        rings = [polygons.exterior, *polygons.interiors]
+        return [np.asarray(ring.coords, dtype=float)[:-1, :2] for ring in rings]
+    assert isinstance(polygons, list | tuple)
+    return [np.asarray(outline, dtype=float) for outline in polygons]

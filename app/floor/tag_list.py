@@ -10,17 +10,15 @@ from app.floor.nails import Key
 from app.floor.tags import TagSpec
 from geometry.labels import Box
 from geometry.layout import SIDES, TIE_INNER
+from geometry.tape import tape_text
 
 if TYPE_CHECKING:
     from app.floor.view import FloorView
 
-_KIND_WORDS = {
-    "string rule": "String rule",
-    "curvature center": "Curvature center",
-    "best fit": "Best fit",
-}
-_APART = 46.0
-"""Pixels between the inner-pivot points from which each can carry its own tag."""
+_APART = 8.0
+"""Pixels from which two points are told apart by eye."""
+_CLOSE = 2.0
+"""Pixels per mm from which the inner-pivot points carry tags without being asked."""
 
 
 def tag_list(view: FloorView, area: Box) -> tuple[list[TagSpec], list[Box]]:
@@ -180,29 +178,40 @@ def _gravity(view: FloorView, area: Box) -> list[TagSpec]:
     place = view.scene.gravity
     if place is None:
         return []
-    words = f"{wording.tape_text(place[1], view.document.units)} up"
+    words = f"{tape_text(place[1], view.document.units)} up"
     return [_point(view, area, "gravity", "Center of gravity", words, place, 13.0)]
 
 
 def _pivots(view: FloorView) -> list[TagSpec]:
-    """The three places for an inner tie-rod pivot, where there is room to tell them apart."""
+    """The three places for an inner tie-rod pivot, where they can be told apart.
+
+    Places that stand on one another share a tag; one that the nail hides needs none.
+    """
     wanted = {key[0] for key in (view.hovered, view.chosen) if key and key[1] == TIE_INNER}
     out = []
     for side in SIDES:
-        places = {k: p for (s, k), p in view.scene.pivots.items() if s == side}
-        px = {kind: view.canvas.to_px(*place) for kind, place in places.items()}
-        inside = {kind: at for kind, at in px.items() if _inside(view, *at)}
-        spread = min(
-            (math.dist(a, b) for a in inside.values() for b in inside.values() if a is not b),
-            default=0.0,
-        )
-        if side not in wanted and spread < _APART:
+        if side not in wanted and view.canvas.dots < _CLOSE:
             continue
+        nail = view.canvas.to_px(*view.scene.places[side, TIE_INNER])
+        groups: list[tuple[tuple[float, float], list[str]]] = []
         for kind in ("best fit", "curvature center", "string rule"):
-            if kind in inside:
-                over, up = view.document.shown_solution.sides[side].pivots.places[kind]
-                words = wording.place_words_rounded(over, up, view.document.units)
-                out.append(TagSpec(f"{kind} {side}", _KIND_WORDS[kind], words, inside[kind], 9.0))
+            place = view.scene.pivots.get((side, kind))
+            px = None if place is None else view.canvas.to_px(*place)
+            if px is None or not _inside(view, *px) or math.dist(px, nail) < _APART:
+                continue
+            for at, kinds in groups:
+                if math.dist(at, px) < _APART:
+                    kinds.append(kind)
+                    break
+            else:
+                groups.append((px, [kind]))
+        state = view.document.shown_solution.sides[side]
+        for px, kinds in groups:
+            place = state.pivots.places[kinds[0]]
+            assert place is not None
+            words = wording.place_words_rounded(*place, view.document.units)
+            title = wording.capital(", ".join(kinds))
+            out.append(TagSpec(f"{kinds[0]} {side}", title, words, px, 9.0))
     return out
 
 

@@ -2,12 +2,12 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 from typing import Literal
 
-from PySide6.QtCore import QPointF, Qt
-from PySide6.QtGui import QFont, QFontMetricsF, QPainterPath, QPolygonF
+from PySide6.QtCore import QPointF
+from PySide6.QtGui import QFont, QFontMetricsF, QPainterPath, QPen, QPolygonF
 from PySide6.QtWidgets import (
     QGraphicsItem,
     QGraphicsLineItem,
@@ -88,7 +88,8 @@ class Tag(QGraphicsPathItem):
             item.setVisible(bool(text))
             if text:
                 x += QFontMetricsF(font).horizontalAdvance(text)
-                x += 0.6 * metrics.horizontalAdvance("n") if item is self.title and spec.detail else 0
+            if text and item is self.title and spec.detail:
+                x += 0.6 * metrics.horizontalAdvance("n")
         self.width = round(x + _PAD_X)
         self.height = round(metrics.height() + 2 * _PAD_Y)
         self.arrow.setVisible(spec.arrow is not None)
@@ -137,22 +138,22 @@ class TagItems:
         self._offsets: dict[str, tuple[float, float]] = {}
         self._palette: Palette | None = None
         self._bold, self._plain = QFont(), QFont()
+        self._ratio = 1.0
         self.boxes: dict[str, Box] = {}
 
     def dress(self, palette: Palette, font: QFont, ratio: float) -> None:
-        self._palette = palette
+        self._palette, self._ratio = palette, ratio
         self._plain = QFont(font)
         self._bold = QFont(font)
         self._bold.setBold(True)
         for key, tag in self._tags.items():
             tag.dress(palette)
             tag.forget()
-            self._leaders[key].setPen(self._leader_pen(ratio))
-        self._ratio = ratio
+            self._leaders[key].setPen(self._leader_pen())
 
-    def _leader_pen(self, ratio: float):  # noqa: ANN202
+    def _leader_pen(self) -> QPen:
         assert self._palette is not None
-        return pen(self._palette.tag_quiet, 1.0 * ratio)
+        return pen(self._palette.tag_quiet, 1.0 * self._ratio)
 
     def _tag(self, key: str) -> Tag:
         if key not in self._tags:
@@ -162,7 +163,7 @@ class TagItems:
             self._tags[key] = tag
             leader = QGraphicsLineItem()
             leader.setZValue(TAGS_Z - 1.0)
-            leader.setPen(self._leader_pen(self._ratio))
+            leader.setPen(self._leader_pen())
             self._scene.addItem(leader)
             self._leaders[key] = leader
         return self._tags[key]
@@ -173,14 +174,16 @@ class TagItems:
         area: Box,
         soft: Sequence[Box],
         hard: Sequence[Box],
-        to_scene,  # noqa: ANN001
+        to_scene: Callable[[QPointF], QPointF],
     ) -> None:
         """Lay the tags out, the first ones first; ``to_scene`` maps view pixels to the scene."""
         labels = []
         for spec in specs:
             tag = self._tag(spec.key)
             tag.say(spec, self._bold, self._plain)
-            labels.append(Label(spec.key, spec.anchor, tag.width, tag.height, spec.clear))
+            labels.append(
+                Label(spec.key, spec.anchor, tag.width, tag.height, spec.clear, spec.look == "edge")
+            )
         self.boxes = place_labels(labels, area, soft, hard, self._offsets)
         shown = {spec.key: spec for spec in specs}
         for key, tag in self._tags.items():
@@ -196,7 +199,9 @@ class TagItems:
         for key in [k for k in self._offsets if k not in self.boxes]:
             del self._offsets[key]
 
-    def _lead(self, key: str, spec: TagSpec, box: Box, to_scene) -> None:  # noqa: ANN001
+    def _lead(
+        self, key: str, spec: TagSpec, box: Box, to_scene: Callable[[QPointF], QPointF]
+    ) -> None:
         """A thin line from a tag to what it names, where it had to go some way off."""
         x = min(max(spec.anchor[0], box.left), box.right)
         y = min(max(spec.anchor[1], box.top), box.bottom)

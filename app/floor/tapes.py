@@ -32,7 +32,7 @@ class Tape(QWidget):
         metrics = QFontMetricsF(self._font())
         if self._across:
             return round(metrics.capHeight() + 22)
-        return round(metrics.horizontalAdvance("360") + 18)
+        return round(metrics.horizontalAdvance("−360") + 17)
 
     def sizeHint(self) -> QSize:
         size = self.thickness()
@@ -109,12 +109,12 @@ class Tape(QWidget):
         painter.setFont(font)
         metrics = QFontMetricsF(font)
         length = self.width() if self._across else self.height()
-        ends = sorted((self._mm(0.0), self._mm(length)))
+        low, high = sorted((self._mm(0.0), self._mm(length)))
         room = max(metrics.horizontalAdvance("0000"), 2.4 * metrics.height())
         ink, red = QColor(self._palette.tape_ink), QColor(self._palette.tape_red)
         deep = (self.height() if self._across else self.width()) - 2.0
         tick_deep = deep - (metrics.capHeight() + 6 if self._across else 0)
-        for mark in marks(*ends, self._unit, self._dots, room):
+        for mark in marks(low, high, self._unit, self._dots, room):
             at = round(self._px(mark.at)) + 0.5
             painter.setPen(QPen(red if mark.round else ink, 1.0))
             if self._across:
@@ -122,10 +122,11 @@ class Tape(QWidget):
                 painter.drawLine(QPointF(at, 1.0), QPointF(at, size))
                 if mark.numeral:
                     wide = metrics.horizontalAdvance(mark.numeral)
-                    if 2.0 < at - 0.5 * wide and at + 0.5 * wide < length - 2.0:
+                    if at - 0.5 * wide > 2.0 and at + 0.5 * wide < length - 2.0:
                         painter.drawText(QPointF(at - 0.5 * wide, deep - 2.0), mark.numeral)
             else:
-                self._paint_up(painter, metrics, mark.numeral, mark.size, at, deep)
+                numeral = f"−{mark.numeral}" if mark.numeral and mark.at < 0.0 else mark.numeral
+                self._paint_up(painter, metrics, numeral, mark.size, at, deep)
 
     def _paint_up(
         self, painter: QPainter, metrics: QFontMetricsF, numeral: str, size: float, at: float,

@@ -7,114 +7,30 @@ from PySide6.QtGui import (
     QAccessible,
     QAccessibleAnnouncementEvent,
     QContextMenuEvent,
-    QFocusEvent,
-    QKeyEvent,
-    QMouseEvent,
-    QNativeGestureEvent,
     QWheelEvent,
 )
-from PySide6.QtWidgets import QGestureEvent, QGridLayout, QLabel, QPinchGesture, QWidget
+from PySide6.QtWidgets import QGridLayout, QLabel, QWidget
 
 from app.document import Document
 from app.floor import wording
-from app.floor.canvas import Canvas
 from app.floor.hand import Hand
+from app.floor.handled_canvas import HandledCanvas
 from app.floor.measuring import MeasuringTape
 from app.floor.menu import nail_menu
 from app.floor.nails import REACH, Key, nearest
-from app.floor.scene import FloorScene
+from app.floor.scene import FloorScene, zone_outlines
 from app.floor.tag_list import tag_list
 from app.floor.tapes import Tape
 from app.palette import DARK, LIGHT, Palette
+from geometry.drawing import Drawing
 from geometry.finding_checks.finding import Finding
 from geometry.floor_drawing import floor_drawing, floor_pages
-from geometry.drawing import Drawing
 from geometry.labels import Box
 from geometry.layout import RELAY_POINTS, SideName
-from geometry.linkage import Array
 from geometry.pages import Pages
 from geometry.standing import XY
 
 _NOTICE_MS = 4500
-
-
-class _HandledCanvas(Canvas):
-    """The canvas with its events handed to a FloorView."""
-
-    def __init__(self, scene: FloorScene, owner: FloorView) -> None:
-        super().__init__(scene, owner)
-        self._owner = owner
-        self.setFocusPolicy(Qt.FocusPolicy.StrongFocus)
-        self.viewport().grabGesture(Qt.GestureType.PinchGesture)
-        self.setAccessibleName("Floor, front view")
-        self.setAccessibleDescription(
-            "Tab walks the nails, arrow keys move the chosen one. The measure sheet holds the "
-            "same places as a table."
-        )
-
-    def mousePressEvent(self, event: QMouseEvent) -> None:
-        self._owner.hand.press(event)
-        event.accept()
-
-    def mouseMoveEvent(self, event: QMouseEvent) -> None:
-        self._owner.hand.move(event)
-        event.accept()
-
-    def mouseReleaseEvent(self, event: QMouseEvent) -> None:
-        self._owner.hand.release(event)
-        event.accept()
-
-    def mouseDoubleClickEvent(self, event: QMouseEvent) -> None:
-        self._owner.double_click(event.position())
-        event.accept()
-
-    def wheelEvent(self, event: QWheelEvent) -> None:
-        self._owner.wheel(event)
-        event.accept()
-
-    def keyPressEvent(self, event: QKeyEvent) -> None:
-        if not self._owner.hand.key(event):
-            event.ignore()
-
-    def keyReleaseEvent(self, event: QKeyEvent) -> None:
-        if not self._owner.hand.key_up(event):
-            event.ignore()
-
-    def contextMenuEvent(self, event: QContextMenuEvent) -> None:
-        self._owner.ask_menu(event)
-        event.accept()
-
-    def focusNextPrevChild(self, forward: bool) -> bool:
-        return self._owner.walk(forward) or super().focusNextPrevChild(forward)
-
-    def focusInEvent(self, event: QFocusEvent) -> None:
-        super().focusInEvent(event)
-        self._owner.focused(event.reason())
-
-    def focusOutEvent(self, event: QFocusEvent) -> None:
-        super().focusOutEvent(event)
-        self._owner.hand.space = False
-
-    def leaveEvent(self, event: QEvent) -> None:
-        super().leaveEvent(event)
-        self._owner.pointer_left()
-
-    def viewportEvent(self, event: QEvent) -> bool:
-        if event.type() == QEvent.Type.Leave:
-            self._owner.pointer_left()
-        if event.type() == QEvent.Type.Gesture and isinstance(event, QGestureEvent):
-            pinch = event.gesture(Qt.GestureType.PinchGesture)
-            if isinstance(pinch, QPinchGesture):
-                middle = self.viewport().mapFromGlobal(pinch.centerPoint().toPoint())
-                self.zoom(pinch.scaleFactor(), QPointF(middle))
-                event.accept()
-                return True
-        if isinstance(event, QNativeGestureEvent) and (
-            event.gestureType() == Qt.NativeGestureType.ZoomNativeGesture
-        ):
-            self.zoom(1.0 + event.value(), event.position())
-            return True
-        return super().viewportEvent(event)
 
 
 class FloorView(QWidget):
@@ -133,7 +49,7 @@ class FloorView(QWidget):
         self.document = document
         self.scene = FloorScene()
         self.hand = Hand(self)
-        self.canvas = _HandledCanvas(self.scene, self)
+        self.canvas = HandledCanvas(self.scene, self)
         self.measuring = MeasuringTape(self.scene)
         self.across = Tape(Qt.Orientation.Horizontal, self)
         self.upright = Tape(Qt.Orientation.Vertical, self)
@@ -203,7 +119,7 @@ class FloorView(QWidget):
     def refresh(self) -> None:
         """Draw the solution that stands."""
         document = self.document
-        self.scene.follow(document.shown_solution, document.outline_solution, self.chosen)
+        self.scene.follow(document.shown_solution, document.outline_solution)
         if self.hovered not in self.scene.places:
             self.hovered = None
         self.lay_out()
@@ -309,7 +225,9 @@ class FloorView(QWidget):
         """True if a nail may be moved now; otherwise says calmly why not."""
         name = wording.nail_name(self.document.layout, key)
         if self.document.showing_found:
-            self.notice("The car as found is shown to look at.", "Switch to as planned to move nails.")
+            self.notice(
+                "The car as found is shown to look at.", "Switch to as planned to move nails."
+            )
             return False
         if key[1] in self.document.layout.locked:
             self.notice(f"{name} is locked.", "Unlock it to move it.", key)
@@ -412,7 +330,7 @@ class FloorView(QWidget):
         for name in finding.points:
             for key in ((side, name), ("left", name), ("right", name)):
                 if key in self.scene.places:
-                    self.choose(key)  # type: ignore[arg-type]
+                    self.choose(key)
                     return
 
     def set_zone(self, side: SideName, polygons: object) -> None:
@@ -486,20 +404,3 @@ class FloorView(QWidget):
     def pages(self) -> Pages:
         """The floor as it stands, on paper."""
         return floor_pages(self.document.shown_solution, self.document.outline_solution)
-
-
-def zone_outlines(polygons: object) -> list[Array]:
-    """Shapely geometry or arrays as a list of (n, 2) outlines, holes included."""
-    import numpy as np
-
-    if polygons is None:
-        return []
-    if hasattr(polygons, "geoms"):
-        return [ring for part in polygons.geoms for ring in zone_outlines(part)]
-    if hasattr(polygons, "exterior"):
-        if polygons.is_empty:
-            return []
-        rings = [polygons.exterior, *polygons.interiors]
-        return [np.asarray(ring.coords, dtype=float)[:-1, :2] for ring in rings]
-    assert isinstance(polygons, list | tuple)
-    return [np.asarray(outline, dtype=float) for outline in polygons]

@@ -83,10 +83,9 @@ def reach_words(state: CornerState, travel: float, unit: UnitName) -> str:
 def measured_words(start: XY, end: XY, unit: UnitName) -> str:
     """What the measuring tape reads between two places."""
     dx, dy = end[0] - start[0], end[1] - start[1]
-    angle = math.degrees(math.atan2(dy, abs(dx))) if (dx or dy) else 0.0
-    return (
-        f"{tape_text(abs(dx), unit)} over · {tape_text(dy, unit)} up · {angle:.1f}°"
-    )
+    rise = "down" if dy < 0.0 else "up"
+    angle = math.degrees(math.atan2(abs(dy), abs(dx)))
+    return f"{tape_text(abs(dx), unit)} over · {tape_text(abs(dy), unit)} {rise} · {angle:.1f}°"
 
 
 def distance_words(start: XY, end: XY, unit: UnitName) -> str:
