@@ -7,13 +7,15 @@ frame and tells the views, which all draw from ``solution``.
 
 from __future__ import annotations
 
+from collections.abc import Iterable
 from dataclasses import replace
+from itertools import chain
 from pathlib import Path
 
 from PySide6.QtCore import QObject, QTimer, Signal
 
 from app.history import History
-from geometry.findings import Finding, findings
+from geometry.findings import SEVERITIES, Finding, findings
 from geometry.layout import Job, Layout, Point, SideName, UnitName
 from geometry.solution import Solution, solve
 
@@ -45,6 +47,7 @@ class Document(QObject):
         self._solution: Solution | None = None
         self._found: Solution | None = None
         self._findings: tuple[Finding, ...] | None = None
+        self._slow: dict[str, tuple[Finding, ...]] = {}
         self._timer = QTimer(self)
         self._timer.setSingleShot(True)
         self._timer.setInterval(0)
@@ -104,10 +107,25 @@ class Document(QObject):
 
     @property
     def findings(self) -> tuple[Finding, ...]:
-        """What is wrong with the car as planned."""
+        """What is wrong with the car as planned, worst first.
+
+        Findings that take longer than a frame come from workers and stand beside the others
+        until newer ones arrive.
+        """
         if self._findings is None:
-            self._findings = findings(self.solution)
+            found = [*findings(self.solution), *chain.from_iterable(self._slow.values())]
+            found.sort(key=lambda finding: SEVERITIES.index(finding.severity))
+            self._findings = tuple(found)
         return self._findings
+
+    def set_slow_findings(self, source: str, found: Iterable[Finding]) -> None:
+        """Take a worker's findings in place of that worker's older ones."""
+        new = tuple(found)
+        if new != self._slow.get(source, ()):
+            self._slow[source] = new
+            self._findings = None
+            if not self._timer.isActive():
+                self._timer.start()
 
     def _solved(self, layout: Layout) -> Solution:
         return solve(layout, dict(self._travel), self._rack, self._span)
@@ -277,6 +295,7 @@ class Document(QObject):
         self._selection = None
         self._showing_found = False
         self._span = DEFAULT_SPAN[job.planned.units]
+        self._slow = {}
         self._forget()
         self.opened.emit()
         self.edited.emit()

@@ -25,6 +25,7 @@ from app.panels.findings import FindingsPanel
 from app.panels.measure_sheet import MeasureSheetPanel
 from app.panels.readouts import ReadoutsPanel
 from app.panels.stance_bar import StanceBar
+from app.watch import RoomWatch
 from geometry.layout import Job
 from geometry.lengths import format_length
 
@@ -50,6 +51,7 @@ class MainWindow(QMainWindow):
         self._lay_out()
         self._build_status()
         self.commands = Commands(self)
+        self.room_watch = RoomWatch(document)
         self.findings_panel.shown.connect(self._point_out)
         document.edited.connect(self._show_name)
         document.opened.connect(self._opened)
@@ -234,6 +236,7 @@ class MainWindow(QMainWindow):
         if not files.may_close(self.document, self):
             event.ignore()
             return
+        self.room_watch.background.finish()
         settings.put("window geometry", self.saveGeometry())
         for name, splitter in self._splitters():
             settings.put(f"{name} splitter", splitter.saveState())
