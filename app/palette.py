@@ -8,10 +8,22 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
-VERMILLION = "#D55E00"
-BLUE = "#0072B2"
-GREEN = "#009E73"
-PURPLE = "#8B3A6F"
+from geometry.floor_colors import (
+    BLUE,
+    CHALK,
+    GREEN,
+    INK,
+    NO_GO,
+    PARTS,
+    TAG,
+    TAG_EDGE,
+    TAG_INK,
+    TAPE,
+    TAPE_EDGE,
+    TAPE_INK,
+    TAPE_RED,
+    VERMILLION,
+)
 
 ARM_DASH = (11.0, 4.0)
 CONTACT_DASH = (10.0, 3.0, 1.5, 3.0)
@@ -62,32 +74,6 @@ class Palette:
     parts: dict[str, tuple[str | None, str | None]]
 
 
-_LIGHT_PARTS: dict[str, tuple[str | None, str | None]] = {
-    "tire": ("#77746E", "#2B2B2A"),
-    "groove": (None, "#3A3937"),
-    "window": ("#C9C4BA", "#4A4844"),
-    "rim": ("#8E9599", "#2A3034"),
-    "hub": ("#A9ACAD", "#3B4045"),
-    "spring": ("#8FA08C", "#3C4A3B"),
-    "strut": ("#4E565D", "#20262B"),
-    "rod": ("#AEB4B8", "#4A5157"),
-    "rack": ("#8D7F75", "#3B332D"),
-    "rack light": ("#B5A89E", None),
-    "bellows": ("#4A4A4B", "#1F1F20"),
-    "clamp": ("#5C6268", "#2A2F34"),
-    "relay": ("#6C5A78", "#33293B"),
-    "relay light": ("#9D8BA9", None),
-    "tie": ("#8A5A2B", "#3D2610"),
-    "tie light": ("#C08E58", None),
-    "arm": ("#46535F", "#1C242B"),
-    "arm light": ("#8796A3", None),
-    "knuckle": ("#7B868F", "#2C343B"),
-    "knuckle light": ("#98A3AB", "#4C565E"),
-    "eye": ("#5B6975", "#1C242B"),
-    "bush": ("#23282D", "#15191D"),
-    "joint": ("#39424A", "#171D22"),
-}
-
 _DARK_PARTS: dict[str, tuple[str | None, str | None]] = {
     "tire": ("#55544F", "#B3AFA6"),
     "groove": (None, "#8F8C84"),
@@ -117,15 +103,15 @@ _DARK_PARTS: dict[str, tuple[str | None, str | None]] = {
 LIGHT = Palette(
     dark=False,
     floor="#D9D5CC", grain=4, dot="#B5B0A5", dot_strong="#8E897E",
-    chalk="#7FA3D6", chalk_core="#3E6DB5", chalk_text="#2F5592", dust="#FBF9F4",
-    arm_string=VERMILLION, contact_string=BLUE, tie_string="#00795A",
-    zone="#BFDCC9", zone_edge="#2E8B63", no_go="#B4705C",
-    ink="#22262A", mark_fill="#F7F4ED",
-    tape="#F2CE3E", tape_edge="#A98708", tape_ink="#28230C", tape_red="#C01818",
-    tag="#F3E7C3", tag_edge="#C9B47C", tag_ink="#2B2618", tag_quiet="#6A6046",
+    chalk="#7FA3D6", chalk_core=CHALK, chalk_text="#2F5592", dust="#FBF9F4",
+    arm_string=VERMILLION, contact_string=BLUE, tie_string=GREEN,
+    zone="#BFDCC9", zone_edge="#2E8B63", no_go=NO_GO,
+    ink=INK, mark_fill="#F7F4ED",
+    tape=TAPE, tape_edge=TAPE_EDGE, tape_ink=TAPE_INK, tape_red=TAPE_RED,
+    tag=TAG, tag_edge=TAG_EDGE, tag_ink=TAG_INK, tag_quiet="#6A6046",
     chosen="#B3420A", nail_light="#F6F7F8", nail_dark="#8F979E", nail_edge="#23292E",
     nail_locked="#4A5258", broken="#8D887D",
-    parts=_LIGHT_PARTS,
+    parts=PARTS,
 )
 
 DARK = Palette(

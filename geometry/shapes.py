@@ -16,7 +16,7 @@ from geometry.linkage import Array
 
 Pair = tuple[float, float] | Array
 
-_CORNER_STEPS = 7
+_CORNER_STEPS = 9
 
 
 @lru_cache(maxsize=64)

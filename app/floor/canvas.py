@@ -139,8 +139,10 @@ class Canvas(QGraphicsView):
         if port.width() < 10 or port.height() < 10:
             return
         dots = min(port.width() / box.width(), port.height() / box.height())
-        middle = box.center()
-        self._set(dots, (middle.x(), middle.y()), QPointF(0.5 * port.width(), 0.5 * port.height()))
+        # Spare height goes mostly above the car: the floor line stays low in the view.
+        spare = port.height() - dots * box.height()
+        low = port.height() - 0.35 * spare
+        self._set(dots, (box.center().x(), box.top()), QPointF(0.5 * port.width(), low))
         self.fitted = True
 
     def reveal(self, x: float, y: float, margin: float = 40.0) -> None:

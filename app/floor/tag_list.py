@@ -8,6 +8,7 @@ from typing import TYPE_CHECKING
 from app.floor import wording
 from app.floor.nails import Key
 from app.floor.tags import TagSpec
+from geometry import floor_words
 from geometry.labels import Box
 from geometry.layout import SIDES, TIE_INNER
 from geometry.tape import tape_text
@@ -62,15 +63,15 @@ def _reach(view: FloorView) -> list[TagSpec]:
     """A calm word on each side that can't stand in this pose."""
     stuck = [stand for stand in view.scene.stands.values() if not stand.meets]
     units, travel = view.document.units, view.document.travel
-    words = {s.side: wording.reach_words(s.state, travel[s.side], units) for s in stuck}
+    words = {s.side: floor_words.reach_words(s.state, travel[s.side], units) for s in stuck}
     if len(stuck) == 2 and len(set(words.values())) == 1:
         anchor = view.canvas.to_px(0.0, max(s.points["wheel center"][1] for s in stuck))
-        said = wording.capital(words["left"])
+        said = floor_words.capital(words["left"])
         return [TagSpec("reach", said, "", anchor, 30.0, "notice")]
     return [
         TagSpec(
             f"reach {stand.side}",
-            f"{wording.capital(stand.side)} side {words[stand.side]}",
+            f"{floor_words.capital(stand.side)} side {words[stand.side]}",
             "",
             view.canvas.to_px(*stand.points["wheel center"]),
             30.0,
@@ -159,19 +160,32 @@ def _centers(view: FloorView, area: Box) -> list[TagSpec]:
     units = view.document.units
     out = []
     if scene.roll is not None:
-        words = wording.roll_words(solution, units)
+        words = floor_words.roll_words(solution, units)
         out.append(_point(view, area, "roll center", "Roll center", words, scene.roll, 11.0))
+    mirrored = _mirrored(view)
     for side in SIDES:
         center = scene.centers.get(side)
         if center is None:
             continue
-        words = wording.center_words(center, scene.stands[side], units)
-        title = f"{wording.capital(side)} instant center"
+        off = center.at_infinity or not _inside(view, *view.canvas.to_px(*center.place))
+        if mirrored and side == "right" and not off:
+            continue
+        words = floor_words.center_words(center, scene.stands[side], units)
+        title = f"{floor_words.capital(side)} instant center"
+        if mirrored and not off:
+            title = "Instant center"
         out.append(
             _point(view, area, f"center {side}", title, words, center.place, 13.0,
                    center.at_infinity)
         )
     return out
+
+
+def _mirrored(view: FloorView) -> bool:
+    """True if the right side stands as the left one's mirror image: one tag speaks for both."""
+    solution = view.document.shown_solution
+    travel = solution.travel
+    return solution.layout.linked and travel["left"] == travel["right"] and not solution.rack
 
 
 def _gravity(view: FloorView, area: Box) -> list[TagSpec]:
@@ -209,16 +223,20 @@ def _pivots(view: FloorView) -> list[TagSpec]:
         for px, kinds in groups:
             place = state.pivots.places[kinds[0]]
             assert place is not None
-            words = wording.place_words_rounded(*place, view.document.units)
-            title = wording.capital(", ".join(kinds))
+            words = floor_words.place_words(*place, view.document.units)
+            title = floor_words.capital(", ".join(kinds))
             out.append(TagSpec(f"{kinds[0]} {side}", title, words, px, 9.0))
     return out
 
 
 def _no_go(view: FloorView, area: Box) -> list[TagSpec]:
     out = []
+    named: set[str] = set()
     for index, (name, x, y) in enumerate(view.scene.no_go.places):
+        if name in named:
+            continue
+        named.add(name)
         px, py = view.canvas.to_px(x, y)
         if _inside(view, px, py):
-            out.append(TagSpec(f"no-go {index}", wording.capital(name), "", (px, py), 6.0))
+            out.append(TagSpec(f"no-go {index}", floor_words.capital(name), "", (px, py), 6.0))
     return out
