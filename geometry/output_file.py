@@ -2,11 +2,11 @@
 
 from __future__ import annotations
 
-import contextlib
 import errno
 import os
-import tempfile
 from pathlib import Path
+
+from geometry.text_file import write_file
 
 _REASONS = {
     errno.EACCES: "you have no permission to write there",
@@ -29,43 +29,19 @@ class OutputError(OSError):
 
 
 def replace_file(path: str | os.PathLike[str], data: bytes) -> None:
-    """Write ``data`` to ``path`` by way of a new file beside it, so a crash leaves one whole.
+    """Write ``data`` to ``path`` so that a crash leaves the old file or the new one whole.
 
     A link is followed and an existing file's permissions are kept. Raises OutputError.
     """
-    target = Path(path)
-    temporary: str | None = None
     try:
-        target = Path(os.path.realpath(path))
-        if target.is_dir():
-            raise IsADirectoryError(errno.EISDIR, "is a folder")
-        if target.exists() and not os.access(target, os.W_OK):
-            raise PermissionError(errno.EPERM, "is write-protected")
-        handle, temporary = tempfile.mkstemp(prefix=".", suffix=".part", dir=target.parent)
-        with os.fdopen(handle, "wb") as file:
-            file.write(data)
-            file.flush()
-            os.fsync(file.fileno())
-        os.chmod(temporary, _mode(target))
-        os.replace(temporary, target)
+        write_file(path, data)
     except (OSError, ValueError) as fault:
-        if temporary is not None:
-            with contextlib.suppress(OSError):
-                os.unlink(temporary)
-        raise OutputError(f"Could not write {target.name}: {_reason(fault)}.") from fault
+        name = Path(path).name
+        raise OutputError(f"Could not write {name}: {plain_reason(fault)}.") from fault
 
 
-def _mode(target: Path) -> int:
-    """The permissions the file has, or a new file would get."""
-    try:
-        return target.stat().st_mode & 0o7777
-    except OSError:
-        mask = os.umask(0)
-        os.umask(mask)
-        return 0o666 & ~mask
-
-
-def _reason(fault: Exception) -> str:
+def plain_reason(fault: Exception) -> str:
+    """Why a file could not be read or written, as the end of a sentence."""
     if isinstance(fault, OSError) and fault.errno is not None:
         return _REASONS.get(fault.errno, fault.strerror or "the system refused it")
     return "the name can't be used for a file"

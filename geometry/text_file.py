@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import contextlib
+import errno
 import os
 import stat
 import tempfile
@@ -68,25 +69,33 @@ def _too_large(limit: int) -> str:
 
 
 def write_text_file(path: Path | str, text: str) -> None:
+    """Write text as UTF-8 by ``write_file``, with its promises and errors."""
+    write_file(path, text.encode("utf-8"))
+
+
+def write_file(path: os.PathLike[str] | str, data: bytes) -> None:
     """Write a file so that the old one stands until the new one is safely on disk.
 
     A link is followed to the file it names; the old file's permissions are kept. Raises
-    OSError, and then the old file is untouched and nothing is left behind.
+    OSError (ValueError for a name no system takes), and then the old file is untouched and
+    nothing is left behind.
     """
     target = Path(os.path.realpath(path))
     if target.exists() and not target.is_file():
-        raise IsADirectoryError(21, "there is a folder or device of that name", str(target))
+        raise IsADirectoryError(
+            errno.EISDIR, "there is a folder or device of that name", str(target)
+        )
     mode: int | None = None
     with contextlib.suppress(FileNotFoundError):
         mode = stat.S_IMODE(target.stat().st_mode)
         if not os.access(target, os.W_OK):
-            raise PermissionError(13, "the file is write-protected", str(target))
+            raise PermissionError(errno.EPERM, "the file is write-protected", str(target))
     descriptor, temporary = tempfile.mkstemp(
         dir=target.parent, prefix=f".{target.name[:40]}.", suffix=".part"
     )
     try:
         with os.fdopen(descriptor, "wb") as file:
-            file.write(text.encode("utf-8"))
+            file.write(data)
             file.flush()
             os.fsync(file.fileno())
         if mode is None:
