@@ -6,6 +6,7 @@ Outlines are (n, 2) arrays on the floor, mm (see ``geometry.standing``).
 
 from __future__ import annotations
 
+import math
 from collections.abc import Iterator
 from dataclasses import dataclass
 from typing import Literal
@@ -64,7 +65,7 @@ def side_parts(stand: Standing) -> list[Part]:
     return [
         Part(stand.side, role, outline)
         for role, outline in _side_outlines(stand)
-        if bool(np.isfinite(outline).all())
+        if math.isfinite(float(outline.sum()))
     ]
 
 
@@ -165,7 +166,9 @@ def car_parts(solution: Solution, both: dict[SideName, Standing]) -> list[Part]:
     else:
         outlines = _rack(both)
     return [
-        Part(None, role, outline) for role, outline in outlines if np.isfinite(outline).all()
+        Part(None, role, outline)
+        for role, outline in outlines
+        if math.isfinite(float(outline.sum()))
     ]
 
 

@@ -72,7 +72,7 @@ class Label:
 GAP = 3.0
 """Clear room kept between two labels."""
 
-_SOFT, _MARK, _FALLBACK, _HABIT = 60.0, 90.0, 200.0, 12.0
+_SOFT, _MARK, _FALLBACK, _HABIT = 90.0, 90.0, 200.0, 12.0
 _DIRECTIONS = np.array(
     [(1.0, -0.6), (-1.0, -0.6), (1.0, 0.6), (-1.0, 0.6), (0.0, -1.0), (0.0, 1.0), (1.0, 0.0),
      (-1.0, 0.0)]

@@ -25,7 +25,7 @@ def _unit_arc(start: float, end: float, steps: int) -> Array:
     return np.column_stack([np.cos(angles), np.sin(angles)])
 
 
-def circle(center: Pair, radius: float, steps: int = 36) -> Array:
+def circle(center: Pair, radius: float, steps: int = 30) -> Array:
     """A circle's outline (steps, 2)."""
     around = _unit_arc(0.0, math.tau * (1 - 1 / steps), steps)
     return np.asarray(center, dtype=float) + radius * around

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections import defaultdict
 
+from PySide6.QtCore import Qt
 from PySide6.QtGui import QBrush, QColor, QLinearGradient, QPainterPath, QPen
 from PySide6.QtWidgets import QGraphicsPathItem, QGraphicsScene
 
@@ -41,6 +42,7 @@ class PartItems:
     def __init__(self, scene: QGraphicsScene) -> None:
         self._items: dict[tuple[SideName | None, Role], list[QGraphicsPathItem]] = {}
         self._broken: dict[SideName | None, bool] = dict.fromkeys(OWNERS, False)
+        self._shapes: dict[tuple[SideName | None, Role], tuple[bytes, ...]] = {}
         self._palette: Palette | None = None
         self._ratio = 1.0
         self._pens: dict[str, QPen] = {}
@@ -72,6 +74,8 @@ class PartItems:
             if role in _BARS and edge is not None and fill is not None:
                 self._pens[role] = pen(edge, _BARS[role], cosmetic=False)
                 self._pens[f"{role} core"] = pen(fill, 0.5 * _BARS[role], cosmetic=False)
+                for bar in (self._pens[role], self._pens[f"{role} core"]):
+                    bar.setJoinStyle(Qt.PenJoinStyle.RoundJoin)
             elif role in _FUSED and edge is not None:
                 # Half of it disappears under the fill.
                 self._pens[role] = pen(edge, 2.0 * width)
@@ -102,12 +106,12 @@ class PartItems:
         for part in parts:
             grouped[part.side, part.role].append(part.outline)
         for key, items in self._items.items():
-            outlines = grouped.get(key)
-            if outlines is None:
-                if not items[0].path().isEmpty():
-                    for item in items:
-                        item.setPath(QPainterPath())
+            outlines = grouped.get(key, [])
+            # While one nail is dragged, most parts stand still and cost nothing.
+            shape = tuple(outline.tobytes() for outline in outlines)
+            if shape == self._shapes.get(key, ()):
                 continue
+            self._shapes[key] = shape
             path = path_of(outlines, key[1] not in OPEN_ROLES)
             for item in items:
                 item.setPath(path)

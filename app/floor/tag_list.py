@@ -28,7 +28,7 @@ def tag_list(view: FloorView, area: Box) -> tuple[list[TagSpec], list[Box]]:
     specs += _notices(view, area)
     specs += _reach(view)
     specs += _measured(view)
-    specs += _nails(view)
+    specs += _nails(view, area)
     specs += _centers(view, area)
     specs += _gravity(view, area)
     specs += _pivots(view)
@@ -91,8 +91,8 @@ def _measured(view: FloorView) -> list[TagSpec]:
     return [TagSpec("measured", title, wording.measured_words(start, end, units), middle, 12.0)]
 
 
-def _nails(view: FloorView) -> list[TagSpec]:
-    """The nail under the pointer and the chosen one."""
+def _nails(view: FloorView, area: Box) -> list[TagSpec]:
+    """The nail under the pointer and the chosen one, also when that is off the floor."""
     keys: list[Key] = []
     dragged = view.hand.drag
     for key in (None if dragged is None else dragged.key, view.hovered, view.chosen):
@@ -103,16 +103,13 @@ def _nails(view: FloorView) -> list[TagSpec]:
     away = any(view.document.travel.values()) or bool(view.document.rack)
     out = []
     for rank, key in enumerate(keys):
-        x, y = view.canvas.to_px(*view.scene.places[key])
-        if rank and not _inside(view, x, y):
-            continue
         detail = wording.nail_words(layout, key)
         if away:
             detail += " at ride height"
         if key[1] in layout.locked:
             detail += " · locked"
         name = wording.nail_name(layout, key)
-        out.append(TagSpec(f"nail {rank}", name, detail, (x, y), 14.0))
+        out.append(_point(view, area, f"nail {rank}", name, detail, view.scene.places[key], 14.0))
     return out
 
 

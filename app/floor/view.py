@@ -318,7 +318,9 @@ class FloorView(QWidget):
         self.hand.cancel()
         if key is not None:
             self.document.select(*key)
-        nail_menu(self, key).exec(at)
+        menu = nail_menu(self, key)
+        menu.exec(at)
+        menu.deleteLater()
 
     # --- findings and zones -------------------------------------------------------------
 
