@@ -15,6 +15,7 @@ from pathlib import Path
 from PySide6.QtCore import QObject, QTimer, Signal
 
 from app.history import History
+from app.home_file import FileMark, HomeFile
 from geometry.findings import SEVERITIES, Finding, findings
 from geometry.layout import Job, Layout, Point, SideName, UnitName
 from geometry.solution import Solution, solve
@@ -38,7 +39,8 @@ class Document(QObject):
     def __init__(self, job: Job, path: Path | None = None, parent: QObject | None = None) -> None:
         super().__init__(parent)
         self._history = History(job)
-        self.path = path
+        self.file = HomeFile()
+        self.file.settle(path, None)
         self._travel: dict[SideName, float] = {"left": 0.0, "right": 0.0}
         self._rack = 0.0
         self._span = DEFAULT_SPAN[job.planned.units]
@@ -46,6 +48,7 @@ class Document(QObject):
         self._showing_found = False
         self._solution: Solution | None = None
         self._found: Solution | None = None
+        self._found_posed: tuple[object, ...] = ()
         self._findings: tuple[Finding, ...] | None = None
         self._slow: dict[str, tuple[Finding, ...]] = {}
         self._timer = QTimer(self)
@@ -63,6 +66,11 @@ class Document(QObject):
     def layout(self) -> Layout:
         """The car as planned, which is what a person edits."""
         return self.job.planned
+
+    @property
+    def path(self) -> Path | None:
+        """The file the job lives in, or None while it has none."""
+        return self.file.path
 
     @property
     def units(self) -> UnitName:
@@ -101,8 +109,13 @@ class Document(QObject):
     @property
     def found_solution(self) -> Solution | None:
         """The car as found in the same pose, or None if the job holds none."""
-        if self._found is None and self.job.found is not None:
-            self._found = self._solved(self.job.found)
+        found = self.job.found
+        if found is None:
+            return None
+        # A drag moves only the plan; the car as found is solved again when it is posed anew.
+        posed = (found, tuple(self._travel.values()), self._rack, self._span)
+        if self._found is None or self._found_posed != posed:
+            self._found, self._found_posed = self._solved(found), posed
         return self._found
 
     @property
@@ -202,6 +215,11 @@ class Document(QObject):
             self._history.drop()
             self._mark()
 
+    @property
+    def previewing(self) -> bool:
+        """True while a drag shows a car that is no undo step yet."""
+        return self._history.previewing
+
     def settled_layout(self) -> Layout:
         """The car as planned before any drag under way."""
         return self._history.settled.planned
@@ -246,6 +264,33 @@ class Document(QObject):
         if job.found is not None:
             self.apply("plan from as found", replace(job, planned=job.found))
 
+    def put_back_as_found(self, side: SideName, name: str) -> None:
+        """Put one nail of the plan back to where it was found."""
+        found = self.job.found
+        if found is not None and self.found_place(side, name) is not None:
+            layout = self.settled_layout()
+            changed = layout.with_point(side, name, found.point(side, name))
+            self.apply_layout(f"put {name} back as found", changed)
+
+    def found_place(self, side: SideName, name: str) -> Point | None:
+        """Where a nail was found; None if the car as found is not kept or has none such."""
+        if self.job.found is None:
+            return None
+        try:
+            return self.job.found.point(side, name)
+        except KeyError:
+            return None
+
+    def set_job_card(self, title: str, shop: str, customer: str, notes: str) -> None:
+        """Fill in the paperwork as one undo step; the title goes to both cars."""
+        job = self._history.settled
+        found = None if job.found is None else replace(job.found, title=title)
+        planned = replace(job.planned, title=title)
+        card = replace(
+            job, planned=planned, found=found, shop=shop, customer=customer, notes=notes
+        )
+        self.apply("fill in job card", card)
+
     def set_units(self, units: UnitName) -> None:
         """Show inches or millimeters (an undo step, as the file keeps it)."""
         job = self._history.settled
@@ -277,8 +322,9 @@ class Document(QObject):
         """True if closing now would lose something."""
         return not self._history.is_clean
 
-    def mark_saved(self, path: Path) -> None:
-        self.path = path
+    def mark_saved(self, path: Path, mark: FileMark | None = None) -> None:
+        """The job as it stands is now in ``path``, which then looked like ``mark``."""
+        self.file.settle(path, mark)
         self._history.mark_clean()
         self.edited.emit()
 
@@ -286,10 +332,10 @@ class Document(QObject):
         self._history.mark_changed()
         self.edited.emit()
 
-    def open_job(self, job: Job, path: Path | None) -> None:
+    def open_job(self, job: Job, path: Path | None, mark: FileMark | None = None) -> None:
         """Put another job in this one's place, with a fresh history, at ride height."""
         self._history = History(job)
-        self.path = path
+        self.file.settle(path, mark)
         self._travel = {"left": 0.0, "right": 0.0}
         self._rack = 0.0
         self._selection = None
@@ -314,7 +360,6 @@ class Document(QObject):
 
     def _forget(self) -> None:
         self._solution = None
-        self._found = None
         self._findings = None
 
     def _mark(self) -> None:

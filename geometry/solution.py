@@ -199,12 +199,13 @@ def inner_pivots(corner: Corner, ride_view: FrontView, travel: Array) -> InnerPi
     ruled = string_rule(corner, ride_view)
     curved = curvature_center(corner)
     present = corner.tie_inner[1:, 0]
-    fits = [best_fit(corner, motion, start) for start in (curved, present)]
+    best = best_fit(corner, motion, curved)
+    if not np.all(np.isfinite(best)):
+        # Without a curvature center to start from, the present pivot has to do.
+        best = best_fit(corner, motion, present)
     rows: Sequence[Array] = [present, ruled[:2] if ruled[2] == 1.0 else ruled[:2] * np.nan, curved]
     with np.errstate(all="ignore"):
-        fit_ranges = toe_range(toe_of(motion, corner, np.stack(fits, axis=1)))
-        best = int(np.nanargmin(fit_ranges)) if np.any(np.isfinite(fit_ranges)) else 0
-        pivots = np.stack([*rows, fits[best]], axis=1)
+        pivots = np.stack([*rows, best], axis=1)
         ranges = toe_range(toe_of(motion, corner, pivots))
     return InnerPivots(
         {kind: pair_or_none(pivots[:, k]) for k, kind in enumerate(PIVOT_KINDS)},
