@@ -31,37 +31,56 @@ class FindingRow(QFrame):
 
     def __init__(self, finding: Finding, parent: QWidget | None = None) -> None:
         super().__init__(parent)
-        self.finding = finding
-        sign, word, color = MARKS[finding.severity]
         self.setFocusPolicy(Qt.FocusPolicy.TabFocus)
-        self.setAccessibleName(f"{word}: {finding.headline}")
-        self.setAccessibleDescription(finding.detail)
         self.setCursor(Qt.CursorShape.PointingHandCursor)
         row = QHBoxLayout(self)
         row.setContentsMargins(0, 3, 0, 3)
         row.setSpacing(8)
-        mark = QLabel(sign)
-        mark.setStyleSheet(f"color: {color};")
-        mark.setToolTip(word)
-        row.addWidget(mark, 0, Qt.AlignmentFlag.AlignTop)
+        self._mark = QLabel()
+        row.addWidget(self._mark, 0, Qt.AlignmentFlag.AlignTop)
         words = QVBoxLayout()
         words.setSpacing(1)
-        head = QLabel(finding.headline)
-        head.setObjectName("heading")
-        head.setWordWrap(True)
-        words.addWidget(head)
-        detail = QLabel(finding.detail)
-        detail.setObjectName("quiet")
-        detail.setWordWrap(True)
-        words.addWidget(detail)
+        self._head, self._cure, self._detail = QLabel(), QLabel(), QLabel()
+        self._head.setObjectName("heading")
+        self._detail.setObjectName("quiet")
+        for label in (self._head, self._cure, self._detail):
+            label.setWordWrap(True)
+            words.addWidget(label)
         row.addLayout(words, 1)
-        if finding.cure is not None:
-            button = QToolButton()
-            button.setText("Do it")
-            button.setAccessibleName(f"Do it: {finding.headline}")
-            button.setToolTip("Make this move on the car as planned (can be undone)")
-            button.clicked.connect(self._want_cure)
-            row.addWidget(button, 0, Qt.AlignmentFlag.AlignTop)
+        self._button = QToolButton()
+        self._button.setText("Do it")
+        self._button.clicked.connect(self._want_cure)
+        row.addWidget(self._button, 0, Qt.AlignmentFlag.AlignTop)
+        self._severity = ""
+        self.show_finding(finding)
+
+    def show_finding(self, finding: Finding) -> None:
+        """Show another finding in this row; labels are reused, since a drag changes only words."""
+        self.finding = finding
+        sign, word, color = MARKS[finding.severity]
+        if finding.severity != self._severity:
+            self._severity = finding.severity
+            self._mark.setText(sign)
+            self._mark.setStyleSheet(f"color: {color};")
+            self._mark.setToolTip(word)
+        cure = finding.cure
+        for label, text in (
+            (self._head, finding.headline),
+            (self._cure, "" if cure is None else cure.text),
+            (self._detail, finding.detail),
+        ):
+            if label.text() != text:
+                label.setText(text)
+                label.setVisible(bool(text))
+        can_do = cure is not None and bool(cure.moves)
+        if can_do == self._button.isHidden():
+            self._button.setVisible(can_do)
+        self._button.setToolTip(
+            "" if cure is None else f"{cure.text} On the car as planned; can be undone."
+        )
+        self._button.setAccessibleName(f"Do it: {finding.headline}")
+        self.setAccessibleName(f"{word}: {finding.headline}")
+        self.setAccessibleDescription(f"{'' if cure is None else cure.text} {finding.detail}")
 
     def _want_cure(self) -> None:
         self.cure_wanted.emit(self.finding)
@@ -93,6 +112,16 @@ class FindingsPanel(Card):
         self._area.setWidgetResizable(True)
         self._area.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
         self.body.addWidget(self._area)
+        holder = QWidget()
+        self._column = QVBoxLayout(holder)
+        self._column.setContentsMargins(0, 0, 4, 0)
+        self._column.setSpacing(2)
+        self._fine = QLabel("Nothing to find fault with in this car, as far as it was measured.")
+        self._fine.setWordWrap(True)
+        self._fine.setObjectName("quiet")
+        self._column.addWidget(self._fine)
+        self._column.addStretch(1)
+        self._area.setWidget(holder)
         self._rows: list[FindingRow] = []
         self._shown: tuple[Finding, ...] | None = None
         document.solved.connect(self.refresh)
@@ -104,31 +133,25 @@ class FindingsPanel(Card):
         return self._rows
 
     def refresh(self) -> None:
-        """Show the document's findings; rebuilt only when they read differently."""
+        """Show the document's findings."""
         found = self._document.findings
         if found == self._shown:
             return
         self._shown = found
-        holder = QWidget()
-        column = QVBoxLayout(holder)
-        column.setContentsMargins(0, 0, 4, 0)
-        column.setSpacing(2)
-        self._rows = []
-        for finding in found:
+        while len(self._rows) > len(found):
+            row = self._rows.pop()
+            self._column.removeWidget(row)
+            row.hide()
+            row.deleteLater()
+        for row, finding in zip(self._rows, found, strict=False):
+            row.show_finding(finding)
+        for finding in found[len(self._rows):]:
             row = FindingRow(finding)
             row.chosen.connect(self._choose)
-            row.cure_wanted.connect(self._cure)
+            row.cure_wanted.connect(self._apply_cure)
+            self._column.insertWidget(len(self._rows), row)
             self._rows.append(row)
-            column.addWidget(row)
-        if not found:
-            fine = QLabel("Nothing to find fault with in this car, as far as it was measured.")
-            fine.setWordWrap(True)
-            fine.setObjectName("quiet")
-            column.addWidget(fine)
-        column.addStretch(1)
-        place = self._area.verticalScrollBar().value()
-        self._area.setWidget(holder)
-        self._area.verticalScrollBar().setValue(place)
+        self._fine.setVisible(not found)
         wrong = sum(f.severity == "wrong" for f in found)
         self._count.setText(f"{wrong} wrong, {len(found) - wrong} more" if found else "")
 
@@ -137,7 +160,8 @@ class FindingsPanel(Card):
             self._document.select(finding.side or "left", finding.points[0])
         self.shown.emit(finding)
 
-    def _cure(self, finding: Finding) -> None:
+    def _apply_cure(self, finding: Finding) -> None:
         if finding.cure is not None:
             layout = finding.cure.applied(self._document.settled_layout())
-            self._document.apply_layout(finding.cure.text, layout)
+            text = finding.cure.text.rstrip(".")
+            self._document.apply_layout(text[:1].lower() + text[1:], layout)

@@ -87,6 +87,7 @@ class MeasureModel(QAbstractTableModel):
         self._side: SideName = "left"
         self._rows: list[Row] = []
         self._refusals: dict[tuple[int, int], tuple[str, str]] = {}
+        self._shown: list[tuple[object, ...]] = []
         self._strong = QFont()
         self._strong.setBold(True)
         self.refresh()
@@ -115,14 +116,29 @@ class MeasureModel(QAbstractTableModel):
     def refresh(self) -> None:
         """Follow the document: same rows are only repainted."""
         rows = self._wanted_rows()
+        shown = self._shown_rows(rows)
         if rows != self._rows:
             self.beginResetModel()
             self._rows = rows
             self._refusals.clear()
             self.endResetModel()
         else:
-            last = self.index(len(rows) - 1, len(COLUMNS) - 1)
-            self.dataChanged.emit(self.index(0, 0), last)
+            # Only what reads differently is painted again; a drag changes one row.
+            for row, (before, now) in enumerate(zip(self._shown, shown, strict=True)):
+                if before != now:
+                    self.dataChanged.emit(self.index(row, 0), self.index(row, len(COLUMNS) - 1))
+        self._shown = shown
+
+    def _shown_rows(self, rows: list[Row]) -> list[tuple[object, ...]]:
+        """What decides how each row reads."""
+        layout, found = self._document.layout, self._document.job.found
+        out: list[tuple[object, ...]] = []
+        for at, row in enumerate(rows):
+            values = [self._value(row, column, layout) for column in (1, 2, 3)]
+            was = [self._value(row, column, found) for column in (1, 2, 3)] if found else []
+            refused = [self._refusals.get((at, column)) for column in (1, 2, 3)]
+            out.append((layout.units, *values, *was, *refused, row in layout.locked))
+        return out
 
     def row_of(self, name: str) -> int | None:
         """The row of a point, or None if the sheet has none of that name."""

@@ -67,8 +67,9 @@ class ReadoutsPanel(Card):
             self._build(rows)
         planned, found = self._document.solution, self._document.found_solution
         units = self._document.units
-        for column in (2, 3):
-            self._table.setColumnHidden(column, found is None)
+        if self._table.isColumnHidden(2) != (found is None):
+            for column in (2, 3):
+                self._table.setColumnHidden(column, found is None)
         for row, (readout, side) in enumerate(rows):
             value = readout.read(planned, side)
             unit = unit_words(readout.unit, units)
@@ -78,8 +79,10 @@ class ReadoutsPanel(Card):
             self._put(row, 0, label)
             self._put(row, 1, format_readout(readout.unit, value, units))
             tip = readout.tip if value is not None else readout.missing
-            for column in range(4):
-                self._table.item(row, column).setToolTip(tip)
+            # Every set is a repaint of its own; most frames change no tip.
+            if self._table.item(row, 0).toolTip() != tip:
+                for column in range(4):
+                    self._table.item(row, column).setToolTip(tip)
             if found is not None:
                 was = readout.read(found, side)
                 self._put(row, 2, format_readout(readout.unit, was, units))
