@@ -242,14 +242,20 @@ def _least(
     link = shapely.shortest_line(outlines[at], outline)
     (ax, ay), (bx, by) = shapely.get_coordinates(link)
     if room == 0.0:
-        # They meet: say how deep, by the width of what they share.
-        shared = shapely.intersection(outlines[at], outline)
-        room = -2.0 * float(shapely.maximum_inscribed_circle(shared).length) if shared.area else 0.0
+        room = -_depth(shapely.intersection(outlines[at], outline))
     return Clearance(
         part, side, shape.name, view, room, max(shape.clearance, TIRE_ROOM * (part == "tire")),
         float(poses.travel[at]), float(poses.rack[at]), (float(ax), float(ay)),
         (float(bx), float(by)),
     )
+
+
+def _depth(shared: BaseGeometry) -> float:
+    """How deep two outlines stand in one another, mm: the width of what they share."""
+    # A touch along an edge can come beside what has an area; it has no depth.
+    areas = [part for part in shapely.get_parts(shared) if part.area > 0.0]
+    radii = [float(shapely.maximum_inscribed_circle(area).length) for area in areas]
+    return 2.0 * max(radii, default=0.0)
 
 
 def tire_clearances(poses: PoseSet) -> Iterator[Clearance]:

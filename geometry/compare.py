@@ -16,7 +16,7 @@ import numpy as np
 from geometry.finding_checks.wording import Wording
 from geometry.layout import RELAY_POINTS, SIDE_POINTS, SIDES, Layout, RelayRod, SideName
 from geometry.solution import CornerState, Solution
-from geometry.tolerances import camber_gain, tolerance, toe_length
+from geometry.tolerances import camber_gain, toe_length, tolerance
 
 Verdict = Literal["better", "worse", "the same", "different", "can't be told"]
 

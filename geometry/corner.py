@@ -34,6 +34,17 @@ SWING_LIMIT = 1.35
 """How far the lower arm is followed from ride height each way, rad."""
 
 SWING_STEPS = 121
+
+MISSED_TRAVEL = 1e-6
+"""How far the wheel may be off its travel in a pose that counts, mm: rounding in huge cars."""
+
+LENGTH_SHARE = 1e-7
+"""How far a rigid length may come out wrong, as a share of the corner's size, in a pose that
+counts: rounding in a car measured some 1e-5 mm from a singular one makes more of it."""
+
+AS_BUILT_SHARE = 1e-5
+"""How near the parts must come to their measured places at ride height, likewise."""
+
 UP = np.array([[0.0], [0.0], [1.0]])
 AHEAD = np.array([[1.0], [0.0], [0.0]])
 
@@ -398,7 +409,53 @@ class Corner:
         travel = np.broadcast_to(travel, shape)
         with np.errstate(all="ignore"):
             swing, found = self.swing_for(travel, inner)
+            # At ride height the arm stands as it was measured, whatever rounding makes of a
+            # wheel whose height hardly depends on it there.
+            measured = (travel == 0.0) & np.all(inner == self.tie_inner, axis=0)
+            swing = np.where(measured, 0.0, swing)
             return self._poses_at(travel, swing, np.broadcast_to(inner, (3, *shape)), found)
+
+    @cached_property
+    def _size(self) -> Array:
+        """The farthest measured point from the lower ball joint (*cars, 1), mm."""
+        away = [norm(place - self.lower_ball) for place in self.points.values()]
+        return np.asarray(np.max(np.broadcast_arrays(*away), axis=0))
+
+    @cached_property
+    def as_built(self) -> np.ndarray:
+        """Whether the measured parts meet at ride height where they were measured, (*cars, 1).
+
+        False for parts whose place their lengths do not decide: a tie rod that ends on the
+        kingpin axis, an arm of no length.
+        """
+        with np.errstate(all="ignore"):
+            still = np.zeros((*self.cars, 1))
+            _, upper, outer, in_knuckle, _ = self._chain(still, self.tie_inner)
+            off = norm(outer - self.tie_outer)
+            off = off + norm(upper - self.upper_ride) + norm(in_knuckle - self.upper_ride)
+            return np.asarray(off <= AS_BUILT_SHARE * self._size)
+
+    def _kept(
+        self,
+        lower: Array,
+        upper: Array,
+        outer: Array,
+        in_knuckle: Array,
+        inner: Array,
+        wheel: Array,
+    ) -> np.ndarray:
+        """Whether the parts kept their lengths (...), which singular parts do not."""
+        knuckle = in_knuckle - self.lower_ball
+        off = np.zeros(())
+        for now, ride in (
+            (upper - lower, knuckle),
+            (outer - lower, self.tie_outer - self.lower_ball),
+            (outer - inner, self.tie_outer - self.tie_inner),
+            (wheel - lower, self.wheel_center - self.lower_ball),
+            (wheel - outer, self.wheel_center - self.tie_outer),
+        ):
+            off = np.maximum(off, np.abs(norm(now) - norm(ride)))
+        return np.asarray(off <= LENGTH_SHARE * self._size)
 
     def _poses_at(self, travel: Array, swing: Array, inner: Array, found: np.ndarray) -> Poses:
         swing = np.where(found, swing, np.nan)
@@ -413,17 +470,26 @@ class Corner:
 
         spin = carried(self.spin_axis)
         wheel = lower + carried(self.wheel_center - self.lower_ball)
-        found = found & np.isfinite(wheel[2]) & np.isfinite(spin[2])
+        kept = self._kept(lower, upper, outer, in_knuckle, inner, wheel)
+        found = found & self.as_built & kept & (np.abs(norm(spin) - 1.0) <= LENGTH_SHARE)
+        found &= np.abs(wheel[2] - self.wheel_center[2] - travel) <= MISSED_TRAVEL
+        lower, outer, wheel, spin, first = (
+            np.where(found, place, np.nan) for place in (lower, outer, wheel, spin, first)
+        )
+        swing = np.where(found, swing, np.nan)
         strut = None
         if self.is_strut:
             strut = lower + carried(self.points[names.STRUT_LOWER] - self.lower_ball)
+            upper = np.broadcast_to(upper, lower.shape)
+        else:
+            upper = np.where(found, upper, np.nan)
         contact = contact_point(wheel, spin, self.tire_radius)
         scrub, trail = ground_offsets(lower, upper, spin, contact)
         return Poses(
             travel=travel,
             assembles=found,
             lower_ball=lower,
-            upper_ball=np.broadcast_to(upper, lower.shape),
+            upper_ball=upper,
             tie_inner=np.where(found, inner, np.nan),
             tie_outer=outer,
             wheel_center=wheel,

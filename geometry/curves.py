@@ -97,6 +97,6 @@ def curves_to_csv(solution: Solution) -> str:
     table = [in_units(c.kind, c.read(solution, side), units) for c, side in columns]
     for row, height in enumerate(travel):
         cells = [values[row] for values in table]
-        writer.writerow([repr(float(height))]
-                        + [repr(float(v)) if np.isfinite(v) else "" for v in cells])
+        writer.writerow([repr(float(height) + 0.0)]
+                        + [repr(float(v) + 0.0) if np.isfinite(v) else "" for v in cells])
     return out.getvalue()

@@ -65,4 +65,5 @@ def alignment(layout: Layout, wanted: Layout, span: float) -> Alignment:
         for row in compare(goal, after)
         if row.verdict in ("worse", "different")
     )
-    return Alignment(before, after, ("static camber, by shims", "static toe, by the tie rods"), leaves)
+    mends = ("static camber, by shims", "static toe, by the tie rods")
+    return Alignment(before, after, mends, leaves)

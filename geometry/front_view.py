@@ -112,8 +112,9 @@ def roll_center(left: FrontView, right: FrontView) -> Array:
         point = roll_center_place(left, right)
         floor = line_through(mirrored_point(right.contact), left.contact)
         floor = floor * np.where(floor[1] < 0.0, -1.0, 1.0)
-        exists = point[2] == 1.0
         up = distance_to_line(floor, point[0], point[1])
+        # Tires in one place stand on no one floor, and then there is no height over it.
+        exists = (point[2] == 1.0) & np.isfinite(up)
         return np.stack([np.where(exists, point[0], np.nan), np.where(exists, up, np.nan)])
 
 

@@ -14,6 +14,7 @@ import numpy as np
 from geometry.corner import Corner
 from geometry.front_view import FrontView, inner_pivot_of
 from geometry.linkage import Array, cross, dot, homogeneous, line_through, meeting, unit
+from geometry.minimax import minimax
 
 STENCIL_STEP = 0.01
 """Arm swing between the samples of the eighth-order difference formulas, rad."""
@@ -56,9 +57,12 @@ class HeldMotion:
     def toe_for(self, inner: Array, rod: Array, shift: Array | None = None) -> Array:
         """Toe (...), rad, for inner pivots (3, ...) with tie rods of length ``rod`` (...).
 
-        NaN where the tie rod can't reach. ``shift`` (3, ...) moves the inner pivot (rack).
+        NaN where the tie rod can't reach or the arms don't meet. ``shift`` (3, ...) moves the
+        inner pivot (rack).
         """
-        return self.toe_at(self.turn_for(inner if shift is None else inner + shift, rod))
+        toe = self.toe_at(self.turn_for(inner if shift is None else inner + shift, rod))
+        # Where the arms don't meet the motion holds the nearest it came, which is no pose.
+        return np.where(self.assembles, toe, np.nan)
 
     def turn_for(self, inner: Array, rod: Array) -> Array:
         """The knuckle's turn (...), rad, about the kingpin that fits a tie rod.
@@ -103,7 +107,9 @@ def held_motion(corner: Corner, swing: Array) -> HeldMotion:
         travel = (lower + wheel_axle + wheel_arm)[2] - corner.wheel_center[2]
         return HeldMotion(
             travel=travel,
-            assembles=np.asarray((margin >= 0.0) & fits & np.isfinite(travel)),
+            assembles=np.asarray(
+                (margin >= 0.0) & fits & np.isfinite(travel) & corner.as_built
+            ),
             axle=lower + axle,
             arm=arm,
             across=across,
@@ -212,9 +218,10 @@ def toe_of(motion: HeldMotion, corner: Corner, pivots: Array) -> Array:
     """
     inner = np.stack(np.broadcast_arrays(corner.tie_inner[0], pivots[0], pivots[1]))[..., None]
     rod = corner.tie_outer[..., None] - inner
+    flat = ("travel", "assembles")
     grown = HeldMotion(
         **{
-            name: value[..., None, :] if value.ndim > 1 or name in ("travel", "assembles") else value
+            name: value[..., None, :] if value.ndim > 1 or name in flat else value
             for name, value in motion.__dict__.items()
         }
     )
@@ -257,58 +264,3 @@ def best_fit(corner: Corner, motion: HeldMotion, start: Array) -> Array:
             if np.hypot(*(shares[choice] * move)) < 1e-6:
                 break
         return place
-
-
-def minimax(slopes: Array, offsets: Array) -> Array | None:
-    """The x (2,) with the least peak-to-peak of ``offsets + slopes @ x`` (n,), by exchange.
-
-    Stiefel's exchange: four poses that share the extreme value decide a plane fit with two
-    slopes and a level; the worst pose replaces one of them until none is worse. None where
-    the slopes do not determine x.
-    """
-    scale = np.abs(slopes).max(axis=0)
-    if len(offsets) < 4 or not np.all(np.isfinite(slopes)) or np.any(scale == 0.0):
-        return None
-    rows = np.column_stack([slopes / scale, np.ones(len(offsets))])
-    chosen = np.linspace(0, len(offsets) - 1, 4).round().astype(int)
-    size = float(np.abs(offsets - offsets.mean()).max()) or 1.0
-    for _ in range(60):
-        solved = _level(rows[chosen], offsets[chosen])
-        if solved is None:
-            return None
-        fit, level = solved
-        rest = offsets + rows @ fit
-        worst = int(np.argmax(np.abs(rest)))
-        if abs(rest[worst]) <= level + 1e-13 * size:
-            break
-        trials = []
-        for drop in range(4):
-            candidate = chosen.copy()
-            candidate[drop] = worst
-            trial = _level(rows[candidate], offsets[candidate])
-            if trial is not None:
-                trials.append((trial[1], drop))
-        if not trials or max(trials)[0] <= level * (1.0 + 1e-15):
-            break
-        chosen[max(trials)[1]] = worst
-    return np.asarray(fit[:2] / scale)
-
-
-def _level(rows: Array, offsets: Array) -> tuple[Array, float] | None:
-    """The fit (3,) and common size of error for four reference poses; None if singular."""
-    weights = np.array([
-        (-1) ** i * np.linalg.det(np.delete(rows, i, axis=0)) for i in range(4)
-    ])
-    total = np.abs(weights).sum()
-    if not total > 1e-14:
-        return None
-    signs = np.where(weights < 0.0, -1.0, 1.0)
-    level = float(weights @ offsets) / float(total)
-    system = np.column_stack([rows, -signs])
-    try:
-        solution = np.linalg.solve(system, -offsets)
-    except np.linalg.LinAlgError:
-        return None
-    return solution[:3], abs(level)
-
-

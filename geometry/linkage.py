@@ -18,6 +18,10 @@ Array: TypeAlias = NDArray[np.float64]
 PARALLEL_SINE = 1e-9
 """Two lines whose directions differ by less (sine of the angle) count as parallel."""
 
+EDGE_SINE_SQ = 1e-10
+"""Two edges of a rigid part count as one line where the squared sine of the angle between
+them is less: what hangs on them could then turn freely, and rounding would choose its place."""
+
 COINCIDENT_MM = 1e-6
 """Parallel lines closer than this are one line; points closer than this are one point."""
 
@@ -62,7 +66,7 @@ def three_spheres(
     the side of ``to_second x to_third``, -1 for the other. Returns the point (3, ...) and
     the squared distance (...) to the centers' plane, mm2: negative where the spheres do
     not meet, and there the point is the nearest in that plane. NaN where the centers
-    stand in one line.
+    stand in one line (EDGE_SINE_SQ).
     """
     ee = dot(to_second, to_second)
     ff = dot(to_third, to_third)
@@ -70,8 +74,9 @@ def three_spheres(
     along_second = 0.5 * (radius_sq - second_sq + ee)
     along_third = 0.5 * (radius_sq - third_sq + ff)
     normal = cross(to_second, to_third)
-    det = ee * ff - ef * ef
-    det = np.where(det > 0.0, det, np.nan)
+    # The same as ee * ff - ef * ef, but with far less lost where the edges are near one line.
+    det = dot(normal, normal)
+    det = np.where(det > EDGE_SINE_SQ * ee * ff, det, np.nan)
     a = (along_second * ff - along_third * ef) / det
     b = (along_third * ee - along_second * ef) / det
     height_sq = radius_sq - (a * along_second + b * along_third)
@@ -84,16 +89,17 @@ def rigid_coefficients(first: Array, second: Array, place: Array) -> Array:
 
     ``place = a*first + b*second + c*(first x second)``. The coefficients stay the same
     when all three are carried along by one rigid body, which makes them the cheapest way
-    to place a knuckle's other points. NaN where the edges are parallel.
+    to place a knuckle's other points. NaN where the edges are parallel (EDGE_SINE_SQ).
     """
     ee = dot(first, first)
     ff = dot(second, second)
     ef = dot(first, second)
-    det = ee * ff - ef * ef
-    det = np.where(det > 0.0, det, np.nan)
+    normal = cross(first, second)
+    det = dot(normal, normal)
+    det = np.where(det > EDGE_SINE_SQ * ee * ff, det, np.nan)
     we = dot(place, first)
     wf = dot(place, second)
-    wn = dot(place, cross(first, second))
+    wn = dot(place, normal)
     return np.stack(
         np.broadcast_arrays((we * ff - wf * ef) / det, (wf * ee - we * ef) / det, wn / det)
     )

@@ -60,7 +60,9 @@ class Turn:
         return self.roll_angle / self.lateral_g if self.lateral_g else 0.0
 
 
-def roll_arm(cg_height: float, front_height: float, rear_height: float, front_share: float) -> float:
+def roll_arm(
+    cg_height: float, front_height: float, rear_height: float, front_share: float
+) -> float:
     """Height of the mass center above the roll axis at its station, mm.
 
     The station lies ``1 - front_share`` of the wheelbase behind the front axle.
@@ -78,6 +80,8 @@ def turn(
     leaning: bool = True,
 ) -> Turn | None:
     """The steady turn, or None where the springs can't hold the leaning mass up.
+
+    The sprung mass and both tracks must be above zero.
 
     ``leaning`` counts the weight's own moment as the mass leans outward, as the source
     does; without it the two axles' transfers add up to weight x g x height / track exactly
@@ -154,6 +158,8 @@ def car_in_turn(
     assert rate is not None and loads.rear_wheel_rate is not None
     assert loads.rear_roll_center_height is not None
     rear_track = loads.rear_track or front_track
+    if not (loads.sprung_mass > 0.0 and front_track > 0.0 and rear_track > 0.0):
+        return "To see the car in a turn, the sprung weight and both tracks must be above zero."
     front = Axle(
         front_roll_center,
         front_track,
@@ -176,7 +182,9 @@ def car_in_turn(
     return answer
 
 
-def jacking(force_outer: float, force_inner: float, slope_outer: float, slope_inner: float) -> float:
+def jacking(
+    force_outer: float, force_inner: float, slope_outer: float, slope_inner: float
+) -> float:
     """Net lift of the body by an axle's contact lines, N.
 
     Each tire's side force (N, toward the inside of the turn) runs up its contact line;

@@ -78,9 +78,9 @@ def _reverse(plan: PlanView) -> Iterator[Finding]:
     at_lock = [figure for figure in plan.lock_percent.values() if figure is not None]
     parts = []
     if plan.straight_ahead_percent is not None:
-        parts.append(f"{plan.straight_ahead_percent:.0f} percent near straight ahead")
+        parts.append(f"{round(plan.straight_ahead_percent)} percent near straight ahead")
     if at_lock:
-        parts.append(f"{min(at_lock):.0f} percent at lock")
+        parts.append(f"{round(min(at_lock))} percent at lock")
     figures = [*at_lock, plan.straight_ahead_percent]
     yield Finding(
         "reverse-ackermann",

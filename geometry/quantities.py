@@ -60,15 +60,16 @@ def parse_quantity(text: str, kind: Quantity, units: UnitName) -> float:
     Raises QuantityError with a plain reason.
     """
     about = _KINDS[kind]
+    like = f"It should look like {about.example}."
     match = _NUMBER.fullmatch(text) if len(text) <= 40 else None
     if match is None:
-        raise QuantityError(f"Can't read “{text.strip()[:40]}”. It should look like {about.example}.")
+        raise QuantityError(f"Can't read “{text.strip()[:40]}”. {like}")
     word = (match[2] or unit_of(kind, units)).lower()
     if word not in about.units:
-        raise QuantityError(f"“{match[2]}” does not fit here. It should look like {about.example}.")
+        raise QuantityError(f"“{match[2]}” does not fit here. {like}")
     value = float(match[1].replace(",", ".")) * about.units[word]
     if not about.low <= value <= about.high:
-        raise QuantityError(f"“{text.strip()}” is out of range. It should look like {about.example}.")
+        raise QuantityError(f"“{text.strip()}” is out of range. {like}")
     return value
 
 

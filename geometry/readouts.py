@@ -181,7 +181,8 @@ def format_readout(unit: Unit, value: float | None, units: Literal["in", "mm"]) 
     if unit == "length":
         return format_length(value, units)
     if unit == "fine length":
-        return f"{value / 25.4:.3f}" if units == "in" else f"{value:.2f}"
+        size, decimals = (value / 25.4, 3) if units == "in" else (value, 2)
+        return f"{round(size, decimals) + 0.0:.{decimals}f}"
     if unit == "angle":
         return format_angle(value)
     if unit == "angle per travel":
@@ -206,8 +207,6 @@ def unit_words(unit: Unit, units: Literal["in", "mm"]) -> str:
         "angle per travel": f"per {travel}",
         "length per travel": f"{units} per {travel}",
     }[unit]
-
-
 
 
 def change_text(

@@ -78,11 +78,11 @@ def _sprung(side: Side, drop: float) -> tuple[Side, float]:
     motion = held_travel(corner, np.array([drop]))
     poses = corner.poses(drop)
     if not (motion.assembles.all() and poses.assembles.all()):
-        droop, bump = corner.travel_stops()
-        raise LayoutError(
-            "The parts can't reach that height: they stop meeting "
-            f"{float(bump if drop > 0 else -droop):.0f} mm from here."
-        )
+        droop, bump = (float(stop) for stop in corner.travel_stops())
+        stop = bump if drop > 0.0 else -droop
+        # A corner that turns over before its parts stop meeting has no stop to name.
+        where = f": they stop meeting {abs(stop):.0f} mm from here" if math.isfinite(stop) else ""
+        raise LayoutError(f"The parts can't reach that height{where}.")
     # With toe held the kingpin's two points are the pose's own; the rest turns about it.
     swing = _held_swing(corner, drop)
     spin, wheel, outer, strut = _held_knuckle(corner, swing)

@@ -38,7 +38,7 @@ def cornering(layout: Layout, lateral_g: float) -> CornerPicture | str:
 
 
 def _force(newton: float, units: str) -> str:
-    return f"{newton / N_PER_POUND:.0f} lb" if units == "in" else f"{newton:.0f} N"
+    return f"{round(newton / N_PER_POUND)} lb" if units == "in" else f"{round(newton)} N"
 
 
 def _transfer(name: str, part: Transfer, units: str) -> str:
@@ -58,9 +58,9 @@ def turn_words(layout: Layout, lateral_g: float) -> tuple[str, ...]:
     words = Wording(layout.units)
     turn = picture.turn
     lines = [
-        f"In a steady turn of {lateral_g:.2g} g the body leans {words.angle(turn.roll_angle)} "
+        (f"In a steady turn of {lateral_g:.2g} g the body leans {words.angle(turn.roll_angle)} "
         f"({words.angle(turn.roll_gradient)} per g). The roll arm, from the roll axis up to the "
-        f"center of gravity, is {words.signed_tape(turn.roll_arm)}.",
+        f"center of gravity, is {words.signed_tape(turn.roll_arm)}."),
         _transfer("Front", turn.front, layout.units),
         _transfer("Rear", turn.rear, layout.units),
     ]

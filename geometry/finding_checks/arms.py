@@ -80,7 +80,7 @@ def check(subject: Subject) -> Iterator[Finding]:
 
 def _level(subject: Subject) -> Iterator[Finding]:
     slope = lower_arm_slope(subject.state)
-    if slope is None or abs(slope) <= subject.limit("lower arm slope"):
+    if slope is None or abs(slope) <= max(subject.limit("lower arm slope"), 0.0):
         return
     words, side = subject.words, subject.state.side
     pivots = pivot_names(side, "lower")

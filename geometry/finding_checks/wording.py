@@ -47,6 +47,8 @@ class Wording:
         """A place with its sign: below the floor or past the centerline is negative."""
         if abs(mm) < 0.5 * FINEST[self.units]:
             return f"0 {self.units}"
+        if mm < -FAR:
+            return self.tape(mm).replace("more than ", "less than -")
         return f"-{self.tape(mm)}" if mm < 0.0 else self.tape(mm)
 
     def counts(self, mm: float) -> bool:
@@ -70,11 +72,14 @@ class Wording:
     def angle(self, rad: float) -> str:
         """Degrees to a tenth, to a hundredth where small; signed."""
         degrees = math.degrees(rad)
-        return f"{degrees:.1f}°" if abs(degrees) >= 1.0 else f"{degrees:.2f}°"
+        if abs(degrees) >= 1.0:
+            return f"{degrees:.1f}°"
+        return f"{round(degrees, 2) + 0.0:.2f}°"
 
     def rate(self, rad_per_mm: float, of: str = "") -> str:
         """Degrees per inch (or 25 mm) of travel; signed. ``of`` goes after the degrees."""
-        return f"{math.degrees(rad_per_mm) * self.travel_step + 0.0:.2f}°{of} {self.per_travel}"
+        degrees = round(math.degrees(rad_per_mm) * self.travel_step, 2) + 0.0
+        return f"{degrees:.2f}°{of} {self.per_travel}"
 
     def slope(self, per_mm: float, toe: str = "") -> str:
         """Toe length per inch (or 25 mm) of travel; no sign. ``toe`` goes after the length."""
