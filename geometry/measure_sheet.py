@@ -82,6 +82,9 @@ __all__ = [
 SIZE_LIMIT = 2_000_000
 FAULT_LIMIT = 200
 TITLE_LIMIT = 200
+LEAST_WHEELBASE = 1.0
+"""The shortest wheelbase a layout file takes, mm: what is read must be fit to be saved."""
+
 _UNIT_WORDS: dict[str, UnitName] = {
     "in": "in",
     "inch": "in",
@@ -218,6 +221,8 @@ def _read_number(row: Row, reading: _Reading) -> None:
         reading.fault(row, f"read {row.item} {shown}, expected degrees from -45 to 45.")
     elif row.item not in ANGLES and value <= 0.0:
         reading.fault(row, f"read {row.item} {shown}, expected a length above zero.")
+    elif row.item == "wheelbase" and value < LEAST_WHEELBASE:
+        reading.fault(row, f"read {row.item} {shown}, expected a car's length. Is the unit right?")
     reading.numbers[row.item, row.side] = value
 
 

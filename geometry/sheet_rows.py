@@ -134,6 +134,8 @@ def _header(number: int, line: str, separator: str, faults: list[str]) -> list[s
 
 
 def _row(number: int, line: str, separator: str, names: list[str]) -> Row:
+    if len(line) > csv.field_size_limit():
+        raise _RowError(f"read {len(line):,} letters, expected one row of measures.")
     try:
         cells = _cells(line, separator)
     except csv.Error:
