@@ -7,38 +7,28 @@ from functools import partial
 from pathlib import Path
 from typing import TYPE_CHECKING
 
-from PySide6.QtCore import QObject
-from PySide6.QtGui import QAction, QActionGroup, QIcon, QKeySequence
-from PySide6.QtWidgets import QApplication, QMenu, QMessageBox
+from PySide6.QtCore import QObject, Qt
+from PySide6.QtGui import QAction, QIcon, QKeySequence
+from PySide6.QtWidgets import QApplication, QDialog, QMenu, QMessageBox
 
-from app import files, settings, theme
+from app import files, settings
+from app.help_words import CAUTIONS, KEYS
+from app.home_file import FileMark
 from app.layout_commands import LayoutCommands
-from app.resources import __version__, data_path
-from geometry.measure_sheet import measure_sheet_from_text, starting_sheet, write_measure_sheet
+from app.panels.tell_dialog import TellDialog, paragraphs, table
+from app.recovery import left_behind
+from app.resources import __version__, data_path, sample_paths
+from app.view_commands import ViewCommands
+from geometry.curves import curves_to_csv
+from geometry.drawing import DrawingError
+from geometry.layout import SideName
+from geometry.measure_sheet import measure_sheet_from_text
+from geometry.output_file import OutputError
+from geometry.sheet_writing import measure_sheet_to_text, starting_sheet
+from geometry.text_file import write_text_file
 
 if TYPE_CHECKING:
     from app.window import MainWindow
-
-CAUTIONS = (
-    "Steering and suspension can kill. Support the car on stands on hard, level ground with "
-    "the wheels chocked; a jack is never a support.\n\n"
-    "Heating, bending or welding a steering arm, knuckle or control arm is for qualified "
-    "people and may be barred where you are: replace the part, or have it done by them.\n\n"
-    "Torque castle nuts, tighten on to the next slot, and fit a new cotter pin. Have the "
-    "finished work inspected and aligned before it goes on the road. Local codes rule.\n\n"
-    "Bobline computes from what you measured. It does not know what a part can carry."
-)
-
-KEYS = (
-    "Tab, Shift+Tab: walk the nails\n"
-    "Arrow keys: nudge the chosen nail 1/16 in (1 mm); with Shift 1/2 in (10 mm); with Ctrl "
-    "1/64 in (0.1 mm)\n"
-    "Esc: put back a nail being dragged\n"
-    "Alt while dragging: no snapping\n"
-    "Mouse wheel: zoom at the pointer; middle button or Space and drag: pan\n"
-    "T: tape measure from place to place\n"
-    "Home: back to ride height, rack centered"
-)
 
 
 class Commands(QObject):
@@ -55,11 +45,13 @@ class Commands(QObject):
         self._layout_menu()
         self._help_menu()
         self.document.edited.connect(self.refresh)
+        self.document.selected.connect(self.refresh)
+        self.window.floor.tape_mode_changed.connect(self.actions["tape"].setChecked)
         self.refresh()
 
     # --- building -------------------------------------------------------------------
 
-    def _add(
+    def add(
         self,
         menu: QMenu,
         name: str,
@@ -69,7 +61,10 @@ class Commands(QObject):
         *,
         icon: str = "",
         checkable: bool = False,
+        on_floor: bool = False,
     ) -> QAction:
+        """Add a command to a menu; ``on_floor``: its key counts only while the floor has the
+        keyboard, so that it can be typed elsewhere."""
         action = QAction(words, self.window)
         if keys is not None:
             action.setShortcut(QKeySequence(keys))
@@ -80,6 +75,9 @@ class Commands(QObject):
             action.toggled.connect(act)
         else:
             action.triggered.connect(lambda _checked=False: act())
+        if on_floor:
+            action.setShortcutContext(Qt.ShortcutContext.WidgetWithChildrenShortcut)
+            self.window.floor.addAction(action)
         menu.addAction(action)
         self.actions[name] = action
         return action
@@ -87,89 +85,92 @@ class Commands(QObject):
     def _file_menu(self) -> None:
         standard = QKeySequence.StandardKey
         menu = self.window.menuBar().addMenu("&File")
-        new = menu.addMenu("&New")
-        kinds = (("A-arm", "A-&arm car…"), ("strut", "&Strut car…"),
-                 ("relay rod", "A-arm car with &relay rod…"))
+        new = menu.addMenu(_icon("new"), "&New")
+        kinds = (("A-arm", "A-&arm car"), ("strut", "&Strut car"),
+                 ("relay rod", "A-arm car with &relay rod"))
         for kind, words in kinds:
-            self._add(new, f"new {kind}", words, partial(self.new, kind),
-                      standard.New if kind == "A-arm" else None)
-        self._add(menu, "open", "&Open…", self.open, standard.Open)
-        self.samples = menu.addMenu("Open &sample")
-        for path in sorted(data_path("sample_layouts").iterdir()):
-            if path.suffix in (files.SUFFIX, ".csv"):
-                words = path.stem.replace("-", " ").capitalize()
-                suffix = " (measure sheet)" if path.suffix == ".csv" else ""
-                self._add(self.samples, f"sample {path.name}", words + suffix,
-                          partial(self.open_sample, path))
+            self.add(new, f"new {kind}", words, partial(self.new, kind),
+                     standard.New if kind == "A-arm" else None)
+        self.add(menu, "open", "&Open…", self.open, standard.Open, icon="open")
+        self.samples = menu.addMenu("Open sa&mple")
+        for path in sample_paths():
+            words = path.stem.replace("-", " ").capitalize()
+            words += "" if path.suffix == files.SUFFIX or "sheet" in words else " (measure sheet)"
+            self.add(self.samples, f"sample {path.name}", words, partial(self.open_sample, path))
         self.recent = menu.addMenu("Open &recent")
+        self.recent.setToolTipsVisible(True)
         self.recent.aboutToShow.connect(self._fill_recent)
+        self.add(menu, "take back", "&Work to take back…", self.take_back)
+        menu.aboutToShow.connect(self._look_for_kept_work)
         menu.addSeparator()
-        self._add(menu, "save", "&Save", self.save, standard.Save)
-        self._add(menu, "save as", "Save &As…", self.save_as, "Ctrl+Shift+S")
-        self._add(menu, "revert", "Re&vert…", self.revert)
+        self.add(menu, "save", "&Save", self.save, standard.Save, icon="save")
+        self.add(menu, "save as", "Save &As…", self.save_as, "Ctrl+Shift+S")
+        self.add(menu, "revert", "Re&vert…", self.revert)
         menu.addSeparator()
         self.export = menu.addMenu("&Export")
-        self._add(self.export, "export png", "Floor picture, &PNG…", partial(self.picture, "png"))
-        self._add(self.export, "export svg", "Floor picture, &SVG…", partial(self.picture, "svg"))
-        self._add(self.export, "export csv", "&Measure sheet, CSV…", self.export_sheet)
-        self._add(menu, "preview", "Print previe&w…", self.print_preview)
-        self._add(menu, "print", "&Print…", self.print_floor, standard.Print)
+        self.add(self.export, "export png", "Floor picture, &PNG…",
+                 partial(self.picture, "png"), icon="picture")
+        self.add(self.export, "export svg", "Floor picture, &SVG…", partial(self.picture, "svg"))
+        self.add(self.export, "export csv", "&Measure sheet, CSV…", self.export_sheet, icon="sheet")
+        self.add(self.export, "export curves", "&Curves, CSV…", self.export_curves, icon="curves")
+        self.add(menu, "preview", "Print previe&w…", self.print_preview)
+        self.add(menu, "print", "&Print…", self.print_floor, standard.Print, icon="print")
         menu.addSeparator()
-        self._add(menu, "quit", "&Quit", self.window.close, "Ctrl+Q")
+        self.add(menu, "quit", "&Quit", self.window.close, "Ctrl+Q")
 
     def _edit_menu(self) -> None:
         standard = QKeySequence.StandardKey
         menu = self.window.menuBar().addMenu("&Edit")
-        self._add(menu, "undo", "&Undo", self.document.undo, standard.Undo)
-        self._add(menu, "redo", "&Redo", self.document.redo, "Ctrl+Shift+Z")
+        self.add(menu, "undo", "&Undo", self.document.undo, standard.Undo, icon="undo")
+        redo = self.add(menu, "redo", "&Redo", self.document.redo, icon="redo")
+        redo.setShortcuts([QKeySequence("Ctrl+Shift+Z"), QKeySequence("Ctrl+Y")])
         menu.addSeparator()
-        self._add(menu, "link", "&Link sides (right mirrors left)", self._link, checkable=True)
-        self._add(menu, "lock", "Loc&k chosen nail", self._lock, "Ctrl+L", checkable=True)
-        self._add(menu, "snap", "S&nap to the tape", self._snap, checkable=True)
+        self.add(menu, "copy picture", "&Copy floor picture", self.copy_picture, "Ctrl+Shift+C",
+                 icon="picture")
         menu.addSeparator()
-        self._add(menu, "settings", "&Tolerances…", self.tolerances)
+        self.add(menu, "link", "Lin&k sides (right mirrors left)", self._link, icon="link",
+                 checkable=True)
+        self.add(menu, "lock", "&Lock chosen nail", self._lock, "Ctrl+L", icon="lock",
+                 checkable=True)
+        self.add(menu, "snap", "S&nap to the tape", self._snap, icon="snap", checkable=True)
+        menu.addSeparator()
+        self.add(menu, "settings", "&Tolerances…", self.tolerances)
 
     def _view_menu(self) -> None:
-        floor = self.window.floor
-        menu = self.window.menuBar().addMenu("&View")
-        self._add(menu, "fit", "&Fit to floor", floor.fit, "Ctrl+0")
-        self._add(menu, "zoom in", "Zoom &in", floor.zoom_in, "Ctrl++")
-        self._add(menu, "zoom out", "Zoom &out", floor.zoom_out, "Ctrl+-")
-        menu.addSeparator()
-        self._add(menu, "ride height", "Back to &ride height",
-                  self.window.stance_bar.ride_height, "Home")
-        self._add(menu, "tape", "&Tape measure", self._tape, "T", checkable=True)
-        menu.addSeparator()
-        units = QActionGroup(self)
-        for unit, words in (("in", "&Inches"), ("mm", "&Millimeters")):
-            action = QAction(words, self.window, checkable=True)
-            action.triggered.connect(partial(self._units, unit))
-            units.addAction(action)
-            menu.addAction(action)
-            self.actions[f"units {unit}"] = action
-        menu.addSeparator()
-        self._add(menu, "dark", "&Dark floor", self._dark, checkable=True)
-        self.actions["dark"].setChecked(settings.get_bool("dark floor", False))
-        size = menu.addMenu("Te&xt size")
-        for percent in (100, 125, 150, 200):
-            self._add(size, f"text {percent}", f"{percent} %", partial(self._text_size, percent))
+        self.view_menu = self.window.menuBar().addMenu("&View")
+        self.view_commands = ViewCommands(self, self.view_menu)
 
     def _layout_menu(self) -> None:
         menu = self.window.menuBar().addMenu("&Layout")
-        self._add(menu, "keep found", "&Keep as found", self.document.keep_as_found)
-        self._add(menu, "from found", "&Plan again from as found", self.document.plan_from_found)
+        self.add(menu, "keep found", "&Keep as found", self.keep_as_found, icon="found")
+        self.add(menu, "from found", "&Plan again from as found", self.document.plan_from_found)
+        self.add(menu, "nail back", "Put chosen nail &back as found", self.nail_back)
+        self.add(menu, "differs", "What &differs…", self.differences)
+        menu.addSeparator()
+        self.add(menu, "job card", "&Job card…", self.job_card)
         self.layout_menu = menu
         self.layout_commands = LayoutCommands(self.window, menu)
 
     def _help_menu(self) -> None:
         menu = self.window.menuBar().addMenu("&Help")
-        self._add(menu, "keys", "&Keys and mouse", partial(self._tell, "Keys and mouse", KEYS), "F1")
-        self._add(menu, "cautions", "&Cautions", partial(self._tell, "Cautions", CAUTIONS))
-        about = f"Bobline {__version__}\n\nThe shop floor for front ends: pivots in, centers out."
-        self._add(menu, "about", "&About Bobline", partial(self._tell, "About Bobline", about))
+        self.add(menu, "keys", "&Keys and mouse", self.tell_keys, "F1")
+        self.add(menu, "cautions", "&Cautions", self.tell_cautions)
+        self.add(menu, "about", "&About Bobline", self.tell_about)
 
-    def _tell(self, title: str, words: str) -> None:
-        QMessageBox.information(self.window, title, words)
+    def tell_keys(self) -> None:
+        self.run(TellDialog("Keys and mouse", table(KEYS), self.window))
+
+    def tell_cautions(self) -> None:
+        self.run(TellDialog("Cautions", paragraphs(CAUTIONS), self.window))
+
+    def tell_about(self) -> None:
+        about = f"Bobline {__version__}\n\nThe shop floor for front ends: pivots in, centers out."
+        QMessageBox.about(self.window, "About Bobline", about)
+
+    def run(self, dialog: QDialog) -> None:
+        """Show a dialog until it is closed, and let it go."""
+        dialog.exec()
+        dialog.deleteLater()
 
     # --- state ----------------------------------------------------------------------
 
@@ -180,18 +181,30 @@ class Commands(QObject):
             ("undo", document.undo_text, "&Undo"),
             ("redo", document.redo_text, "&Redo"),
         ):
-            self.actions[name].setText(f"{verb} {text}" if text else verb)
-            self.actions[name].setEnabled(text is not None)
-        self._check("link", document.layout.linked)
+            action = self.actions[name]
+            action.setText(f"{verb} {text}" if text else verb)
+            action.setEnabled(text is not None)
+        self.check("link", document.layout.linked)
         chosen = document.selection
         self.actions["lock"].setEnabled(chosen is not None)
-        self._check("lock", chosen is not None and chosen[1] in document.layout.locked)
-        self._check("snap", self.window.floor.snapping)
-        self.actions[f"units {document.units}"].setChecked(True)
-        self.actions["revert"].setEnabled(document.path is not None and document.is_changed)
-        self.actions["from found"].setEnabled(document.job.found is not None)
+        locked = chosen is not None and chosen[1] in document.layout.locked
+        self.check("lock", locked)
+        self.check("snap", self.window.floor.snapping)
+        self.actions["revert"].setEnabled(document.path is not None)
+        has_found = document.job.found is not None
+        self.actions["from found"].setEnabled(has_found)
+        self.actions["differs"].setEnabled(has_found)
+        self.actions["nail back"].setEnabled(not locked and self._is_moved(chosen))
+        self.view_commands.refresh()
 
-    def _check(self, name: str, on: bool) -> None:
+    def _is_moved(self, chosen: tuple[SideName, str] | None) -> bool:
+        """True if a nail was found elsewhere than it is planned."""
+        if chosen is None:
+            return False
+        found = self.document.found_place(*chosen)
+        return found is not None and found != self.document.layout.point(*chosen)
+
+    def check(self, name: str, on: bool) -> None:
         """Set a check mark without acting on it."""
         action = self.actions[name]
         blocked = action.blockSignals(True)
@@ -201,6 +214,7 @@ class Commands(QObject):
     # --- file -----------------------------------------------------------------------
 
     def new(self, kind: str) -> None:
+        """A car of a kind with plausible measures to type over."""
         self.window.open_new(measure_sheet_from_text(starting_sheet(kind)))
 
     def open(self) -> None:
@@ -217,8 +231,9 @@ class Commands(QObject):
 
     def _fill_recent(self) -> None:
         self.recent.clear()
-        for path in settings.recent_files():
-            action = self.recent.addAction(path.name)
+        for number, path in enumerate(settings.recent_files(), 1):
+            name = path.name.replace("&", "&&")
+            action = self.recent.addAction(f"&{number} {name}" if number < 10 else name)
             action.setToolTip(str(path))
             action.setEnabled(path.exists())
             action.triggered.connect(partial(self._open_recent, path))
@@ -226,10 +241,16 @@ class Commands(QObject):
             self.recent.addAction("None yet").setEnabled(False)
         else:
             self.recent.addSeparator()
-            self.recent.addAction("Forget these", settings.forget_recent)
+            self.recent.addAction("&Forget these", settings.forget_recent)
 
-    def _open_recent(self, path: Path) -> None:
+    def _open_recent(self, path: Path, _checked: bool = False) -> None:
         self.window.open_path(path)
+
+    def _look_for_kept_work(self) -> None:
+        self.actions["take back"].setEnabled(bool(left_behind()))
+
+    def take_back(self) -> None:
+        self.window.offer_kept_work()
 
     def save(self) -> None:
         files.save(self.document, self.window)
@@ -246,9 +267,10 @@ class Commands(QObject):
             f"Go back to “{path.name}” as it was last saved? What you changed since is lost.",
         )
         if answer == QMessageBox.StandardButton.Yes:
+            mark = FileMark.of(path)
             job = files.read(path, self.window)
             if job is not None:
-                self.document.open_job(job, path)
+                self.document.open_job(job, path, mark)
 
     # --- pictures and paper -----------------------------------------------------------
 
@@ -259,8 +281,8 @@ class Commands(QObject):
         path = files.ask_export(self.window, "Export floor picture", name, pattern)
         if path is None:
             return
-        drawing = self.window.floor.drawing()
         try:
+            drawing = self.window.floor.drawing()
             if kind == "svg":
                 from geometry.svg import write_svg
 
@@ -269,33 +291,85 @@ class Commands(QObject):
                 from app.sheets.png import write_png
 
                 write_png(drawing, path)
-        except OSError as error:
-            files.tell_written(self.window, path, error)
+        except (OSError, DrawingError) as error:
+            files.tell_not_written(self.window, path, error)
+
+    def copy_picture(self) -> None:
+        """The floor as it stands on the clipboard."""
+        from app.sheets.png import drawing_image
+
+        try:
+            image = drawing_image(self.window.floor.drawing())
+        except DrawingError as error:
+            QMessageBox.warning(self.window, "Bobline", f"There is no picture to copy. {error}")
+            return
+        QApplication.clipboard().setImage(image)
 
     def export_sheet(self) -> None:
+        self._export_text("Export measure sheet", "Measure sheet (*.csv)",
+                          lambda: measure_sheet_to_text(self.document.settled_layout()))
+
+    def export_curves(self) -> None:
+        self._export_text("Export curves", "Curves (*.csv)",
+                          lambda: curves_to_csv(self.document.solution))
+
+    def _export_text(self, title: str, pattern: str, text: Callable[[], str]) -> None:
         name = files.proposed_name(self.document)
-        path = files.ask_export(self.window, "Export measure sheet", name, "Measure sheet (*.csv)")
+        path = files.ask_export(self.window, title, name, pattern)
         if path is None:
             return
         try:
-            write_measure_sheet(path, self.document.layout)
-        except OSError as error:
-            files.tell_written(self.window, path, error)
+            write_text_file(path, text())
+        except (OSError, ValueError) as error:
+            files.tell_not_written(self.window, path, error)
 
     def print_floor(self) -> None:
         from app.sheets.printing import print_pages
 
-        print_pages(self.window.floor.pages(), self.document.layout.title, self.window)
+        self._on_paper(print_pages)
 
     def print_preview(self) -> None:
         from app.sheets.printing import preview_pages
 
-        preview_pages(self.window.floor.pages(), self.document.layout.title, self.window)
+        self._on_paper(preview_pages)
 
-    # --- edit and view ------------------------------------------------------------------
+    def _on_paper(self, act: Callable[..., object]) -> None:
+        try:
+            act(self.window.floor.pages(), self.document.layout.title, self.window)
+        except (OSError, DrawingError) as error:
+            words = str(error) if isinstance(error, OutputError | DrawingError) else (
+                files.sentence(error)
+            )
+            QMessageBox.warning(self.window, "Bobline", f"This was not printed. {words}")
+
+    # --- edit -------------------------------------------------------------------------
 
     def _link(self, on: bool) -> None:
-        self.document.set_linked(on)
+        layout = self.document.settled_layout()
+        if not on or layout.left == layout.right:
+            self.document.set_linked(on)
+            return
+        keep = self._ask_which_side()
+        if keep is None:
+            self.check("link", False)
+        else:
+            self.document.set_linked(True, keep)
+
+    def _ask_which_side(self) -> SideName | None:
+        """Which side both become like; None for neither."""
+        box = QMessageBox(self.window)
+        box.setIcon(QMessageBox.Icon.Question)
+        box.setWindowTitle("Bobline")
+        box.setText("The sides differ. Which one should both be like?")
+        box.setInformativeText("The other side's own measures go (Undo brings them back).")
+        left = box.addButton("&Left", QMessageBox.ButtonRole.AcceptRole)
+        right = box.addButton("&Right", QMessageBox.ButtonRole.AcceptRole)
+        box.addButton(QMessageBox.StandardButton.Cancel)
+        box.exec()
+        clicked = box.clickedButton()
+        if clicked is left:
+            return "left"
+        return "right" if clicked is right else None
 
     def _lock(self, on: bool) -> None:
         chosen = self.document.selection
@@ -306,23 +380,41 @@ class Commands(QObject):
         self.window.floor.snapping = on
         self.window.show_snap()
 
-    def _tape(self, on: bool) -> None:
-        self.window.floor.tape_mode = on
-
-    def _units(self, unit: str, _checked: bool = True) -> None:
-        self.document.set_units("mm" if unit == "mm" else "in")
-
-    def _dark(self, on: bool) -> None:
-        settings.put("dark floor", on)
-        self.window.floor.set_dark(on)
-
-    def _text_size(self, percent: int) -> None:
-        settings.put("text size", percent)
-        application = QApplication.instance()
-        assert isinstance(application, QApplication)
-        theme.dress(application, percent)
-
     def tolerances(self) -> None:
         from app.panels.tolerances import ToleranceDialog
 
-        ToleranceDialog(self.document, self.window).exec()
+        self.run(ToleranceDialog(self.document, self.window))
+
+    # --- as found and as planned ----------------------------------------------------------
+
+    def keep_as_found(self) -> None:
+        """Take the car as it stands as the one found; asks if another would be lost."""
+        job = self.document.job
+        if job.found is not None and job.found != job.planned:
+            answer = QMessageBox.question(
+                self.window, "Bobline",
+                "A car as found is kept already. Put the car as planned in its place?",
+            )
+            if answer != QMessageBox.StandardButton.Yes:
+                return
+        self.document.keep_as_found()
+
+    def nail_back(self) -> None:
+        chosen = self.document.selection
+        if chosen is not None:
+            self.document.put_back_as_found(*chosen)
+
+    def differences(self) -> None:
+        from app.panels.differences_dialog import DifferencesDialog
+
+        if self.document.job.found is not None:
+            self.run(DifferencesDialog(self.document, self.window))
+
+    def job_card(self) -> None:
+        from app.panels.job_card import JobCardDialog
+
+        self.run(JobCardDialog(self.document, self.window))
+
+
+def _icon(name: str) -> QIcon:
+    return QIcon(str(data_path("icons") / f"{name}.svg"))

@@ -19,9 +19,12 @@ from PySide6.QtWidgets import (
 
 from app import settings
 from app.document import Document
+from app.home_file import FileMark
+from geometry.drawing import DrawingError
 from geometry.layout import Job
 from geometry.layout_file import LayoutFileError, write_job
 from geometry.open_file import open_job
+from geometry.output_file import OutputError, plain_reason
 
 SUFFIX = ".bobline"
 LAYOUTS = f"Layouts (*{SUFFIX})"
@@ -52,11 +55,17 @@ def read(path: Path, parent: QWidget) -> Job | None:
     try:
         return open_job(path)
     except OSError as error:
-        faults = [f"{error.strerror or error}."]
+        faults = [sentence(error)]
     except ValueError as error:
         faults = list(getattr(error, "faults", None) or [str(error)])
     show_faults(parent, f"“{path.name}” can't be opened. Nothing was changed.", faults)
     return None
+
+
+def sentence(error: Exception) -> str:
+    """Why the system refused a file, as a sentence."""
+    reason = plain_reason(error)
+    return f"{reason[:1].upper()}{reason[1:]}."
 
 
 def ask_open(parent: QWidget) -> Path | None:
@@ -67,7 +76,8 @@ def ask_open(parent: QWidget) -> Path | None:
 
 def _folder() -> str:
     recent = settings.recent_files()
-    return str(recent[0].parent) if recent else str(Path.home())
+    known = [path.parent for path in recent if path.parent.is_dir()]
+    return str(known[0] if known else Path.home())
 
 
 def proposed_name(document: Document) -> str:
@@ -81,7 +91,56 @@ def save(document: Document, parent: QWidget) -> bool:
     path = document.path
     if path is None or path.suffix.lower() != SUFFIX:
         return save_as(document, parent)
+    if document.file.changed_outside():
+        return _save_over_change(document, path, parent)
     return _write(document, path, parent)
+
+
+def _save_over_change(document: Document, path: Path, parent: QWidget) -> bool:
+    """Another program wrote the file since it was opened: ask before that is lost."""
+    buttons = QMessageBox.StandardButton
+    box = _question(
+        parent,
+        f"“{path.name}” was changed by another program since you opened it.",
+        "Saving here puts your car in place of what stands in it now.",
+    )
+    box.setStandardButtons(buttons.Save | buttons.Cancel)
+    box.button(buttons.Save).setText("Save &over it")
+    other = box.addButton("Save &As…", QMessageBox.ButtonRole.ActionRole)
+    box.setDefaultButton(other)
+    answer = box.exec()
+    if box.clickedButton() is other:
+        return save_as(document, parent)
+    return answer == buttons.Save and _write(document, path, parent)
+
+
+def _question(parent: QWidget, text: str, more: str) -> QMessageBox:
+    box = QMessageBox(parent)
+    box.setIcon(QMessageBox.Icon.Question)
+    box.setWindowTitle("Bobline")
+    box.setText(text)
+    box.setInformativeText(more)
+    box.setWindowModality(Qt.WindowModality.WindowModal)
+    return box
+
+
+def ask_open_elsewhere(path: Path, parent: QWidget) -> str:
+    """What to do with a file that another window has open: "copy", "open" or "" for nothing."""
+    buttons = QMessageBox.StandardButton
+    box = _question(
+        parent,
+        f"“{path.name}” is open in another Bobline window.",
+        "Saved from both, the later one takes the place of the other. Open a copy to save "
+        "under another name, or open it anyway.",
+    )
+    box.setStandardButtons(buttons.Open | buttons.Cancel)
+    box.button(buttons.Open).setText("Open &anyway")
+    copy = box.addButton("Open a &copy", QMessageBox.ButtonRole.ActionRole)
+    box.setDefaultButton(copy)
+    answer = box.exec()
+    if box.clickedButton() is copy:
+        return "copy"
+    return "open" if answer == buttons.Open else ""
 
 
 def save_as(document: Document, parent: QWidget) -> bool:
@@ -96,13 +155,26 @@ def save_as(document: Document, parent: QWidget) -> bool:
         path = path.with_name(path.name + SUFFIX)
         if path.exists() and not _overwrite(path, parent):
             return False
+    if document.file.is_open_elsewhere(path) and not _over_open(path, parent):
+        return False
     return _write(document, path, parent)
 
 
 def _overwrite(path: Path, parent: QWidget) -> bool:
     """The dialog asked about the name as typed; ask again for the name with its suffix."""
     answer = QMessageBox.question(
-        parent, "Bobline", f"“{path.name}” is already there. Put this car in its place?"
+        parent, "Bobline", f"“{path.name}” is already there. Put the new one in its place?"
+    )
+    return answer == QMessageBox.StandardButton.Yes
+
+
+def _over_open(path: Path, parent: QWidget) -> bool:
+    answer = QMessageBox.question(
+        parent,
+        "Bobline",
+        f"“{path.name}” is open in another Bobline window. Put this car in its place anyway?",
+        QMessageBox.StandardButton.Yes | QMessageBox.StandardButton.No,
+        QMessageBox.StandardButton.No,
     )
     return answer == QMessageBox.StandardButton.Yes
 
@@ -115,33 +187,33 @@ def _write(document: Document, path: Path, parent: QWidget) -> bool:
         QMessageBox.warning(
             parent,
             "Bobline",
-            f"“{path.name}” was not saved: {error.strerror or error}.\n\n"
+            f"“{path.name}” was not saved: {plain_reason(error)}.\n\n"
             "What stood in the file before is untouched and your work is still open here. "
-            "Free some room or pick another folder with Save As.",
+            "Mend that, or pick another folder with Save As.",
         )
         return False
     except LayoutFileError as error:
         heading = f"“{path.name}” was not saved; what stood in it before is untouched."
         show_faults(parent, heading, list(error.faults))
         return False
-    document.mark_saved(path)
+    document.mark_saved(path, FileMark.of(path))
     settings.add_recent(path)
     return True
 
 
 def may_close(document: Document, parent: QWidget) -> bool:
     """Ask about unsaved work; True if the document may be let go."""
+    document.cancel_preview()
     if not document.is_changed:
         return True
     buttons = QMessageBox.StandardButton
-    box = QMessageBox(parent)
-    box.setIcon(QMessageBox.Icon.Question)
-    box.setWindowTitle("Bobline")
-    box.setText(f"Save the changes to “{document.layout.title}”?")
-    box.setInformativeText("Without saving, what you changed since the last save is lost.")
+    box = _question(
+        parent,
+        f"Save the changes to “{document.layout.title}”?",
+        "Without saving, what you changed since the last save is lost.",
+    )
     box.setStandardButtons(buttons.Save | buttons.Discard | buttons.Cancel)
     box.setDefaultButton(buttons.Save)
-    box.setWindowModality(Qt.WindowModality.WindowModal)
     answer = box.exec()
     if answer == buttons.Save:
         return save(document, parent)
@@ -156,12 +228,19 @@ def ask_export(parent: QWidget, title: str, name: str, kind: str) -> Path | None
     if not chosen:
         return None
     path = Path(chosen)
-    return path if path.suffix else path.with_suffix(suffix)
+    if path.suffix.lower() == suffix:
+        return path
+    path = path.with_name(path.name + suffix)
+    # The dialog asked about the name as typed only.
+    return path if not path.exists() or _overwrite(path, parent) else None
 
 
-def tell_written(parent: QWidget, path: Path, error: OSError | None) -> None:
-    """A plain message if an export could not be written."""
-    if error is not None:
-        QMessageBox.warning(
-            parent, "Bobline", f"“{path.name}” was not written: {error.strerror or error}."
-        )
+def tell_not_written(parent: QWidget, path: Path, error: Exception) -> None:
+    """A plain message if an export could not be made or written."""
+    if isinstance(error, OutputError | DrawingError):
+        words = str(error)
+    elif isinstance(error, OSError):
+        words = sentence(error)
+    else:
+        words = str(error)
+    QMessageBox.warning(parent, "Bobline", f"“{path.name}” was not written. {words}")

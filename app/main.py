@@ -43,7 +43,13 @@ def run(path: str | None) -> int:
     document = Document(first_job())
     window = MainWindow(document)
     window.show()
-    if path is not None:
-        # After the window is up, so that what is wrong with the file has a place to be told.
-        QTimer.singleShot(0, lambda: window.open_path(Path(path)))
+    # After the window is up, so that what there is to ask or tell has a place.
+    QTimer.singleShot(0, lambda: _begin(window, path))
     return application.exec()
+
+
+def _begin(window: MainWindow, path: str | None) -> None:
+    """Open the file that was asked for, then offer kept work."""
+    if path is not None:
+        window.open_path(Path(path))
+    window.offer_kept_work()

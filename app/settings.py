@@ -11,7 +11,10 @@ RECENT_KEPT = 10
 
 
 def _store() -> QSettings:
-    return QSettings(ORGANIZATION, "bobline")
+    # One form on every system, so that it can be read, moved and taken away by hand.
+    return QSettings(
+        QSettings.Format.IniFormat, QSettings.Scope.UserScope, ORGANIZATION, "bobline"
+    )
 
 
 def get_bool(key: str, default: bool) -> bool:
@@ -45,7 +48,8 @@ def put(key: str, value: object) -> None:
 def recent_files() -> list[Path]:
     """Files opened or saved lately, newest first."""
     value = _store().value("recent", [])
-    names = [value] if isinstance(value, str) else list(value or [])
+    # A list of one comes back from the file as plain text.
+    names = [value] if isinstance(value, str) else value if isinstance(value, list) else []
     return [Path(str(name)) for name in names if name][:RECENT_KEPT]
 
 

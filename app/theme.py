@@ -12,6 +12,8 @@ INK = "#25282C"
 QUIET = "#5E625F"
 STEEL = "#3E4C59"
 CHOSEN = "#FCEBB0"
+REFUSED = "#9C2A00"
+REFUSED_GROUND = "#F9DED2"
 
 _BASE_POINTS = 9.5
 
@@ -20,7 +22,7 @@ QMainWindow, QDialog {{ background: {PAPER}; }}
 QFrame#card {{ background: {CARD}; border: 1px solid {LINE}; border-radius: 4px; }}
 QLabel#heading {{ font-weight: bold; color: {INK}; }}
 QLabel#quiet {{ color: {QUIET}; }}
-QLabel#refusal {{ color: #9C2A00; }}
+QLabel#refusal {{ color: {REFUSED}; }}
 QTableView, QTableWidget {{
     background: {CARD}; border: none; gridline-color: {LINE};
     selection-background-color: {CHOSEN}; selection-color: {INK};
@@ -28,6 +30,18 @@ QTableView, QTableWidget {{
 QHeaderView::section {{
     background: {CARD}; color: {QUIET}; border: none; padding: 2px 4px;
 }}
+QWidget#clear {{ background: transparent; }}
+QLabel#cure {{ color: {INK}; }}
+QFrame#finding {{ border: 1px solid transparent; border-radius: 3px; }}
+QFrame#finding:hover {{ background: {PAPER}; }}
+QFrame#finding:focus {{ border-color: {STEEL}; }}
+QToolButton#tool {{ border: 1px solid transparent; border-radius: 3px; padding: 2px; }}
+QToolButton#tool:hover {{ border-color: {LINE}; background: {CARD}; }}
+QToolButton#tool:checked {{ background: {CHOSEN}; border-color: {LINE}; }}
+QMenuBar {{ background: {PAPER}; spacing: 2px; }}
+QMenuBar::item {{ background: transparent; color: {INK}; padding: 5px 8px; }}
+QMenuBar::item:selected, QMenuBar::item:pressed {{ background: {STEEL}; color: white; }}
+QTableView::indicator {{ width: 0.8em; height: 0.8em; }}
 QScrollArea {{ background: transparent; border: none; }}
 QToolButton#segment {{
     border: 1px solid {LINE}; padding: 3px 10px; background: {CARD}; color: {INK};

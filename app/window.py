@@ -4,13 +4,21 @@ from __future__ import annotations
 
 from pathlib import Path
 
-from PySide6.QtCore import QByteArray, Qt
-from PySide6.QtGui import QCloseEvent, QDragEnterEvent, QDropEvent, QGuiApplication
+from PySide6.QtCore import QByteArray, QEvent, Qt
+from PySide6.QtGui import (
+    QCloseEvent,
+    QDragEnterEvent,
+    QDropEvent,
+    QGuiApplication,
+    QShowEvent,
+)
 from PySide6.QtWidgets import (
+    QApplication,
     QButtonGroup,
     QHBoxLayout,
     QLabel,
     QMainWindow,
+    QMessageBox,
     QSplitter,
     QToolButton,
     QVBoxLayout,
@@ -21,17 +29,25 @@ from app import files, settings
 from app.commands import Commands
 from app.document import Document
 from app.floor.view import FloorView
+from app.home_file import FileMark
+from app.panels.curves import CurvesPanel
 from app.panels.findings import FindingsPanel
+from app.panels.flow import flow_of
 from app.panels.measure_sheet import MeasureSheetPanel
 from app.panels.readouts import ReadoutsPanel
 from app.panels.stance_bar import StanceBar
+from app.panels.tool_strip import ToolStrip
+from app.recovery import Left, Recovery, left_behind
 from app.watch import RoomWatch
 from geometry.layout import Job
 from geometry.lengths import format_length
 
-GUIDANCE = (
-    "This is a sample car. Drag any nail and watch the strings follow, or choose "
-    "File ▸ New to type your own car's measures."
+FIRST_WORDS = (
+    "This is a sample car: drag any nail. File ▸ New starts your own from its measures."
+)
+NEW_WORDS = (
+    "The measures of the new car are only plausible. Type your own over them in the measure "
+    "sheet; Tab goes on to the next cell."
 )
 
 
@@ -48,11 +64,18 @@ class MainWindow(QMainWindow):
         self.findings_panel = FindingsPanel(document)
         self.readouts_panel = ReadoutsPanel(document)
         self.measure_panel = MeasureSheetPanel(document)
+        self.curves = CurvesPanel(document)
         self._lay_out()
         self._build_status()
         self.commands = Commands(self)
+        self.tools = ToolStrip(self.commands)
+        self.menuBar().setCornerWidget(self.tools)
+        self.recovery = Recovery(document)
+        self.recovery.failed.connect(self._tell_not_kept)
         self.room_watch = RoomWatch(document)
         self.findings_panel.shown.connect(self._point_out)
+        self.floor.place_asked.connect(self._type_place)
+        self.stance_bar.refused.connect(self.show_refusal)
         document.edited.connect(self._show_name)
         document.opened.connect(self._opened)
         self._restore()
@@ -62,50 +85,70 @@ class MainWindow(QMainWindow):
 
     def _lay_out(self) -> None:
         self.guidance = self._guidance_line()
-        top = QHBoxLayout()
-        top.setContentsMargins(0, 0, 0, 0)
-        top.setSpacing(12)
-        top.addWidget(self._car_switch())
-        top.addWidget(self.stance_bar, 1)
+        bar = self.stance_bar
         left = QWidget()
         column = QVBoxLayout(left)
-        column.setContentsMargins(8, 4, 4, 4)
+        column.setContentsMargins(8, 4, 2, 2)
         column.setSpacing(4)
-        column.addLayout(top)
+        column.addLayout(flow_of(self._car_switch(), bar.which, bar.travel, bar.rack))
         column.addWidget(self.guidance)
-        self.lower = QSplitter(Qt.Orientation.Vertical)
-        self.lower.setChildrenCollapsible(False)
-        self.lower.addWidget(self.floor)
-        column.addWidget(self.lower, 1)
+        self.stack = QSplitter(Qt.Orientation.Vertical)
+        self.stack.setChildrenCollapsible(False)
+        self.stack.addWidget(self.floor)
+        self.stack.addWidget(self.curves)
+        self.stack.setStretchFactor(0, 1)
+        self.stack.setStretchFactor(1, 0)
+        column.addWidget(self.stack, 1)
 
         self.right = QSplitter(Qt.Orientation.Vertical)
         self.right.setChildrenCollapsible(False)
-        for panel, height in (
-            (self.findings_panel, 200),
-            (self.readouts_panel, 200),
-            (self.measure_panel, 320),
+        self.right.setContentsMargins(2, 4, 8, 2)
+        for panel, share in (
+            (self.findings_panel, 2), (self.readouts_panel, 2), (self.measure_panel, 3)
         ):
-            panel.setMinimumHeight(90)
             self.right.addWidget(panel)
-            self.right.setStretchFactor(self.right.count() - 1, height)
+            self.right.setStretchFactor(self.right.count() - 1, share)
         self.across = QSplitter(Qt.Orientation.Horizontal)
         self.across.setChildrenCollapsible(False)
         self.across.addWidget(left)
         self.across.addWidget(self.right)
         self.across.setStretchFactor(0, 1)
         self.across.setStretchFactor(1, 0)
-        self.across.setSizes([880, 392])
         self.setCentralWidget(self.across)
         self.resize(1280, 800)
+        self._shared_out = False
+
+    def _share_out(self) -> None:
+        """The first sizes of the panels: more than two thirds of the left side to the floor."""
+        self._shared_out = True
+        right = self.measure_panel.wanted_width() + 12
+        self.across.setSizes([max(self.width() - right, 320), right])
+        high = self.stack.height()
+        self.stack.setSizes([high * 68 // 100, high * 32 // 100])
+        high = self.right.height()
+        self.right.setSizes([high * 27 // 100, high * 28 // 100, high * 45 // 100])
+
+    def showEvent(self, event: QShowEvent) -> None:
+        super().showEvent(event)
+        if not self._shared_out:
+            # Only now is it known how much room there is.
+            self._share_out()
+            self._restore_splitters()
+
+    def changeEvent(self, event: QEvent) -> None:
+        super().changeEvent(event)
+        # Python may be asked before the window is built.
+        if event.type() == QEvent.Type.FontChange and getattr(self, "_shared_out", False):
+            self._share_out()
 
     def _guidance_line(self) -> QWidget:
         holder = QWidget()
         row = QHBoxLayout(holder)
         row.setContentsMargins(0, 0, 0, 0)
-        words = QLabel(GUIDANCE)
-        words.setObjectName("guidance")
-        words.setWordWrap(True)
-        row.addWidget(words, 1)
+        self._guidance_words = QLabel(FIRST_WORDS)
+        self._guidance_words.setObjectName("guidance")
+        self._guidance_words.setWordWrap(True)
+        row.addWidget(self._guidance_words, 1)
         done = QToolButton()
         done.setText("Got it")
         done.clicked.connect(self._dismiss_guidance)
@@ -114,8 +157,14 @@ class MainWindow(QMainWindow):
         return holder
 
     def _dismiss_guidance(self) -> None:
-        settings.put("guidance seen", True)
+        if self._guidance_words.text() == FIRST_WORDS:
+            settings.put("guidance seen", True)
         self.guidance.hide()
+
+    def guide(self, words: str) -> None:
+        """Say in the line above the floor what to do next; empty for nothing."""
+        self._guidance_words.setText(words)
+        self.guidance.setVisible(bool(words))
 
     def _car_switch(self) -> QWidget:
         """Which of the document's two cars the floor shows strongly."""
@@ -152,9 +201,11 @@ class MainWindow(QMainWindow):
     def _build_status(self) -> None:
         self._place = QLabel()
         self._snap = QLabel()
+        self._car = QLabel()
         bar = self.statusBar()
         bar.addWidget(self._place)
         bar.addWidget(self._snap)
+        bar.addPermanentWidget(self._car)
         self.floor.pointer_moved.connect(self._show_place)
         self.show_snap()
 
@@ -162,7 +213,8 @@ class MainWindow(QMainWindow):
         units = self.document.units
         side = "left" if over >= 0 else "right"
         self._place.setText(
-            f"{format_length(abs(over), units)} over ({side}) · {format_length(up, units)} up {units}"
+            f"{format_length(abs(over), units)} over ({side}) · "
+            f"{format_length(up, units)} up, {units}"
         )
 
     def show_snap(self) -> None:
@@ -178,11 +230,34 @@ class MainWindow(QMainWindow):
         self.setWindowTitle(f"{name}[*] – Bobline")
         self.setWindowModified(document.is_changed)
         self.setWindowFilePath("" if document.path is None else str(document.path))
+        # Setting the file path puts its own words into the title.
         self.setWindowTitle(f"{name}[*] – Bobline")
+        shown = "as found" if document.showing_found else "as planned"
+        changed = " · changed" if document.is_changed else ""
+        self._car.setText(f"{document.layout.title}, {shown}{changed}")
         self.show_snap()
 
+    def show_refusal(self, reason: str) -> None:
+        """Say in the status bar why something typed was not taken; empty when it was."""
+        self.statusBar().showMessage(reason)
+
+    def _type_place(self, side: str, name: str) -> None:
+        self.measure_panel.type_place("right" if side == "right" else "left", name)
+
+    def walk_panels(self, by: int) -> None:
+        """Give the keyboard to the next panel, or the one before."""
+        stops = [self.floor, self.findings_panel.area, self.readouts_panel.table,
+                 self.measure_panel.table, self.stance_bar.travel.field]
+        has = QApplication.focusWidget()
+        at = next(
+            (i for i, stop in enumerate(stops) if has is not None and
+             (stop is has or stop.isAncestorOf(has))), -1 if by > 0 else 0
+        )
+        stop = stops[(at + by) % len(stops)]
+        stop.setFocus(Qt.FocusReason.ShortcutFocusReason)
+
     def _opened(self) -> None:
-        self.floor.fit()
+        self.guide("")
 
     def _point_out(self, finding: object) -> None:
         self.floor.point_out(finding)
@@ -191,17 +266,74 @@ class MainWindow(QMainWindow):
         """Open a file in this window, after asking about unsaved work."""
         if not files.may_close(self.document, self):
             return False
+        wanted = "open"
+        if self.document.file.is_open_elsewhere(path):
+            wanted = files.ask_open_elsewhere(path, self)
+            if not wanted:
+                return False
+        mark = FileMark.of(path)
         job = files.read(path, self)
         if job is None:
             return False
-        self.document.open_job(job, path)
-        settings.add_recent(path)
+        if wanted == "copy":
+            self.document.open_job(job, None)
+        else:
+            self.document.open_job(job, path, mark)
+            settings.add_recent(path)
         return True
 
     def open_new(self, job: Job) -> None:
         """Put an unsaved job on the floor, after asking about unsaved work."""
         if files.may_close(self.document, self):
             self.document.open_job(job, None)
+            self.guide(NEW_WORDS)
+            self.measure_panel.start_typing()
+
+    # --- kept work --------------------------------------------------------------------
+
+    def offer_kept_work(self) -> None:
+        """Offer back what windows left that ended without asking, if there is any."""
+        from app.panels.recovery_dialog import RecoveryDialog
+
+        left = left_behind()
+        if not left:
+            return
+        dialog = RecoveryDialog(left, self)
+        dialog.exec()
+        chosen = dialog.chosen
+        dialog.deleteLater()
+        if chosen is not None:
+            self.take_back(chosen)
+
+    def take_back(self, left: Left) -> bool:
+        """Put kept work on the floor, marked as changed, with the file it came from."""
+        if left.record is None or not files.may_close(self.document, self):
+            return False
+        lock = left.taken()
+        if lock is None:
+            QMessageBox.information(self, "Bobline", "Another window has taken this work back.")
+            return False
+        try:
+            job = left.record.job()
+        except ValueError as error:
+            files.show_faults(self, "The kept work can't be read.", str(error).splitlines())
+            lock.release()
+            return False
+        path = left.record.path
+        if path is not None and self.document.file.is_open_elsewhere(path):
+            path = None
+        self.document.open_job(job, path, left.record.mark)
+        self.document.mark_changed()
+        # Only when it is kept again here does the old record go.
+        if self.recovery.keep_now():
+            left.remove()
+        lock.release()
+        return True
+
+    def _tell_not_kept(self, reason: str) -> None:
+        self.guide(
+            f"Unsaved work can't be kept against a crash just now: {reason}. Save often."
+        )
 
     def dragEnterEvent(self, event: QDragEnterEvent) -> None:
         if any(url.isLocalFile() for url in event.mimeData().urls()):
@@ -217,27 +349,41 @@ class MainWindow(QMainWindow):
 
     def _restore(self) -> None:
         geometry = settings.get_bytes("window geometry")
-        if not geometry.isEmpty():
-            self.restoreGeometry(geometry)
-            screen = QGuiApplication.screenAt(self.geometry().center())
-            area = (screen or QGuiApplication.primaryScreen()).availableGeometry()
-            if not area.contains(self.geometry().center()):
-                self.move(area.topLeft())
-            self.resize(self.size().boundedTo(area.size()))
+        if not geometry.isEmpty() and self.restoreGeometry(geometry):
+            self._clamp()
+
+    def _restore_splitters(self) -> None:
+        same_text = settings.get_int("splitters at text size", 100, 100, 200) == (
+            settings.get_int("text size", 100, 100, 200)
+        )
         for name, splitter in self._splitters():
             state: QByteArray = settings.get_bytes(f"{name} splitter")
-            if not state.isEmpty():
+            if same_text and not state.isEmpty():
                 splitter.restoreState(state)
 
+    def _clamp(self) -> None:
+        """Keep the window on a screen that is there now."""
+        screen = QGuiApplication.screenAt(self.geometry().center())
+        area = (screen or QGuiApplication.primaryScreen()).availableGeometry()
+        self.resize(self.size().boundedTo(area.size()))
+        place = self.geometry()
+        place.moveLeft(max(area.left(), min(place.left(), area.right() - place.width())))
+        place.moveTop(max(area.top(), min(place.top(), area.bottom() - place.height())))
+        self.setGeometry(place)
+
     def _splitters(self) -> list[tuple[str, QSplitter]]:
-        return [("across", self.across), ("right", self.right), ("lower", self.lower)]
+        return [("across", self.across), ("right", self.right), ("lower", self.stack)]
 
     def closeEvent(self, event: QCloseEvent) -> None:
         if not files.may_close(self.document, self):
             event.ignore()
             return
+        self.commands.layout_commands.motion.stop()
         self.room_watch.background.finish()
+        self.recovery.end()
+        self.document.file.leave()
         settings.put("window geometry", self.saveGeometry())
+        settings.put("splitters at text size", settings.get_int("text size", 100, 100, 200))
         for name, splitter in self._splitters():
             settings.put(f"{name} splitter", splitter.saveState())
         event.accept()

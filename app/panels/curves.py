@@ -11,14 +11,24 @@ import math
 
 import numpy as np
 import pyqtgraph as pg
-from PySide6.QtCore import QPointF, QRectF, Qt, Signal
-from PySide6.QtGui import QColor, QFont, QMouseEvent, QPainterPath, QPen
+from PySide6.QtCore import QEvent, QPointF, QRectF, Qt, Signal
+from PySide6.QtGui import (
+    QColor,
+    QFont,
+    QFontMetrics,
+    QMouseEvent,
+    QPainterPath,
+    QPen,
+    QResizeEvent,
+    QShowEvent,
+)
 from PySide6.QtWidgets import (
     QDialog,
     QGraphicsPathItem,
     QGraphicsRectItem,
     QGridLayout,
     QHBoxLayout,
+    QLabel,
     QSizePolicy,
     QVBoxLayout,
     QWidget,
@@ -47,7 +57,8 @@ def nice_range(low: float, high: float) -> tuple[float, float]:
     span = max(high - low, 1e-3)
     step = 10.0 ** math.floor(math.log10(span))
     step = next(step * m for m in (0.1, 0.2, 0.5, 1.0, 2.0) if span / (step * m) <= 8.0)
-    return math.floor((low - 0.05 * span) / step) * step, math.ceil((high + 0.05 * span) / step) * step
+    air = 0.05 * span
+    return math.floor((low - air) / step) * step, math.ceil((high + air) / step) * step
 
 
 def label_step(low: float, high: float, most: int) -> float:
@@ -105,23 +116,22 @@ class CurvePlot(QWidget):
         self._document = document
         self._large = large
         self._range: tuple[float, float] | None = None
-        self._frame: tuple[float, float, float, str] | None = None
+        self._frame: tuple[float, float, float, float, str] | None = None
         column = QVBoxLayout(self)
         column.setContentsMargins(0, 0, 0, 0)
         column.setSpacing(0)
         self.plot = _Plot()
-        column.addWidget(self.plot)
+        self.title = QLabel()
+        self.title.setObjectName("curve title")
+        self.title.setAlignment(Qt.AlignmentFlag.AlignCenter)
+        column.addWidget(self.title)
+        column.addWidget(self.plot, 1)
         box = self.plot.getPlotItem()
-        box.setContentsMargins(2, 2, 8, 2)
-        small = QFont(self.font())
-        small.setPointSizeF(small.pointSizeF() * (1.0 if large else 0.85))
         for name in ("left", "bottom"):
             axis = box.getAxis(name)
-            axis.setStyle(tickFont=small, tickLength=-3)
+            axis.setStyle(tickLength=-3)
             axis.setPen(QPen(QColor(theme.LINE)))
             axis.setTextPen(QPen(QColor(theme.QUIET)))
-        box.getAxis("left").setWidth(self.fontMetrics().horizontalAdvance("−0.000") + 8)
-        box.getAxis("bottom").setHeight(self.fontMetrics().height() + 6)
         self._band = QGraphicsRectItem()
         self._band.setPen(QPen(Qt.PenStyle.NoPen))
         self._band.setBrush(QColor(BAND_COLOR))
@@ -140,6 +150,33 @@ class CurvePlot(QWidget):
             "Click or drag to move the wheels. Solid: as planned; dotted: right side where it "
             "differs; dashed gray: as found; tinted: within tolerance. Double-click: large."
         )
+        self._size()
+        self.refresh()
+
+    def _size(self) -> None:
+        """Letters and axes as the text size asks; their places are kept fixed for speed."""
+        small = QFont(self.font())
+        small.setPointSizeF(small.pointSizeF() * (1.0 if self._large else 0.85))
+        letters = QFontMetrics(small)
+        box = self.plot.getPlotItem()
+        for name in ("left", "bottom"):
+            box.getAxis(name).setStyle(tickFont=small)
+        # Room above for half of the topmost number.
+        box.setContentsMargins(2, letters.height() // 2, 8, 2)
+        box.getAxis("left").setWidth(letters.horizontalAdvance("−0.000") + 8)
+        box.getAxis("bottom").setHeight(letters.height() + 6)
+        self._frame = None
+
+    def changeEvent(self, event: QEvent) -> None:
+        super().changeEvent(event)
+        if event.type() == QEvent.Type.FontChange and hasattr(self, "plot"):
+            self._size()
+            self.refresh()
+
+    def resizeEvent(self, event: QResizeEvent) -> None:
+        super().resizeEvent(event)
+        # Other room, other number of labels.
+        self._frame = None
         self.refresh()
 
     def _path(
@@ -220,15 +257,18 @@ class CurvePlot(QWidget):
             return
         self._frame = frame
         box = self.plot.getPlotItem()
-        box.setTitle(axis_label(self.curve, self._document.units), color=theme.INK,
-                     size=f"{self.font().pointSizeF():.1f}pt")
+        self.title.setText(axis_label(self.curve, self._document.units))
         self.plot.setRange(xRange=(left, right), yRange=self._range, padding=0.0)
-        y_step = label_step(*self._range, 8 if self._large else 4)
-        x_step = label_step(left, right, 12 if self._large else 6)
+        letters = self.fontMetrics()
+        high = max(2, self.height() // (3 * letters.height()))
+        wide = max(3, (self.width() - 50) // (2 * letters.horizontalAdvance("+00")))
+        y_step = label_step(*self._range, min(8, high))
+        x_step = label_step(left, right, min(12, wide))
         decimals = max(0, -math.floor(math.log10(y_step) + 1e-9))
         xs = np.arange(math.ceil(left / x_step), math.floor(right / x_step) + 1) * x_step
         ys = np.arange(
-            math.ceil(self._range[0] / y_step - 1e-9), math.floor(self._range[1] / y_step + 1e-9) + 1
+            math.ceil(self._range[0] / y_step - 1e-9),
+            math.floor(self._range[1] / y_step + 1e-9) + 1,
         ) * y_step
         box.getAxis("bottom").setTicks([[(float(v), f"{v:+g}" if v else "0") for v in xs]])
         box.getAxis("left").setTicks([[(float(v), f"{v:.{decimals}f}") for v in ys]])
@@ -266,6 +306,7 @@ class CurvesPanel(QWidget):
             self.plots.append(plot)
             row.addWidget(plot)
         self.setMinimumHeight(130)
+        self.setSizePolicy(QSizePolicy.Policy.Ignored, QSizePolicy.Policy.Preferred)
         self._large: QDialog | None = None
         self._large_plots: list[CurvePlot] = []
         document.solved.connect(self.refresh)
@@ -273,11 +314,36 @@ class CurvesPanel(QWidget):
         document.opened.connect(self.refresh)
 
     def refresh(self) -> None:
-        for plot in self.plots:
-            plot.refresh()
+        """Draw what is in sight; what is hidden costs nothing."""
+        if self.isVisible():
+            for plot in self.plots:
+                plot.refresh()
         if self._large is not None and self._large.isVisible():
             for plot in self._large_plots:
                 plot.refresh()
+
+    def resizeEvent(self, event: QResizeEvent) -> None:
+        super().resizeEvent(event)
+        self._fit_number()
+
+    def changeEvent(self, event: QEvent) -> None:
+        super().changeEvent(event)
+        if event.type() == QEvent.Type.FontChange and hasattr(self, "plots"):
+            self._fit_number()
+
+    def _fit_number(self) -> None:
+        """As many curves as have room to be read; all of them are in the large window."""
+        letters = self.fontMetrics()
+        needed = max(
+            letters.horizontalAdvance(axis_label(p.curve, self._document.units)) for p in self.plots
+        )
+        fitting = max(1, (self.width() + 6) // (max(needed + 16, 130) + 6))
+        for number, plot in enumerate(self.plots):
+            plot.setVisible(number < fitting)
+
+    def showEvent(self, event: QShowEvent) -> None:
+        super().showEvent(event)
+        self.refresh()
 
     def enlarge(self) -> None:
         """All curves in a window of their own, alive beside the floor."""

@@ -6,9 +6,10 @@ from PySide6.QtCore import Qt, Signal
 from PySide6.QtGui import QKeyEvent, QMouseEvent
 from PySide6.QtWidgets import (
     QFrame,
-    QHBoxLayout,
+    QGridLayout,
     QLabel,
     QScrollArea,
+    QSizePolicy,
     QToolButton,
     QVBoxLayout,
     QWidget,
@@ -17,81 +18,100 @@ from PySide6.QtWidgets import (
 from app.document import Document
 from app.panels.card import Card
 from geometry.findings import Finding
+from geometry.layout import Layout
 
 MARKS = {"wrong": ("✖", "Wrong", "#B33A00"), "warn": ("▲", "Look at", "#8A5A00"),
          "note": ("●", "Note", "#5E625F")}
 """Sign, word and color of each severity; the sign and word carry it without the color."""
+NOTHING = "Nothing to find fault with in this car, as far as it was measured."
+
+
+def _text_label(kind: str) -> QLabel:
+    label = QLabel()
+    label.setObjectName(kind)
+    label.setWordWrap(True)
+    # As high as its lines need at the width there is, and never a column of single words.
+    policy = QSizePolicy(QSizePolicy.Policy.Ignored, QSizePolicy.Policy.Minimum)
+    policy.setHeightForWidth(True)
+    label.setSizePolicy(policy)
+    return label
 
 
 class FindingRow(QFrame):
-    """One finding: severity mark, headline, wrapped detail and, if it has one, its cure."""
+    """One finding: severity mark, headline, wrapped detail and, if it has one, its cure.
+
+    The row is filled again with each new finding in its place, so that a drag builds nothing.
+    """
 
     chosen = Signal(object)
     cure_wanted = Signal(object)
 
-    def __init__(self, finding: Finding, parent: QWidget | None = None) -> None:
+    def __init__(self, parent: QWidget | None = None) -> None:
         super().__init__(parent)
-        self.setFocusPolicy(Qt.FocusPolicy.TabFocus)
+        self.setObjectName("finding")
+        self.finding: Finding | None = None
+        self.setFocusPolicy(Qt.FocusPolicy.StrongFocus)
         self.setCursor(Qt.CursorShape.PointingHandCursor)
-        row = QHBoxLayout(self)
-        row.setContentsMargins(0, 3, 0, 3)
-        row.setSpacing(8)
-        self._mark = QLabel()
-        row.addWidget(self._mark, 0, Qt.AlignmentFlag.AlignTop)
-        words = QVBoxLayout()
-        words.setSpacing(1)
-        self._head, self._cure, self._detail = QLabel(), QLabel(), QLabel()
-        self._head.setObjectName("heading")
-        self._detail.setObjectName("quiet")
-        for label in (self._head, self._cure, self._detail):
-            label.setWordWrap(True)
-            words.addWidget(label)
-        row.addLayout(words, 1)
-        self._button = QToolButton()
-        self._button.setText("Do it")
-        self._button.clicked.connect(self._want_cure)
-        row.addWidget(self._button, 0, Qt.AlignmentFlag.AlignTop)
-        self._severity = ""
-        self.show_finding(finding)
+        grid = QGridLayout(self)
+        grid.setContentsMargins(4, 4, 4, 4)
+        grid.setHorizontalSpacing(8)
+        grid.setVerticalSpacing(1)
+        self.mark = QLabel()
+        grid.addWidget(self.mark, 0, 0, Qt.AlignmentFlag.AlignTop)
+        self.head, self.detail, self.cure = map(_text_label, ("heading", "quiet", "cure"))
+        grid.addWidget(self.head, 0, 1, 1, 2)
+        grid.addWidget(self.cure, 1, 1)
+        grid.addWidget(self.detail, 2, 1, 1, 2)
+        self.do_it = QToolButton()
+        self.do_it.setText("Do it")
+        self.do_it.clicked.connect(self._want_cure)
+        grid.addWidget(self.do_it, 1, 2, Qt.AlignmentFlag.AlignTop)
+        grid.setColumnStretch(1, 1)
 
-    def show_finding(self, finding: Finding) -> None:
-        """Show another finding in this row; labels are reused, since a drag changes only words."""
+    def show_finding(self, finding: Finding, layout: Layout) -> None:
+        """Fill the row; ``layout`` tells which nails are locked."""
+        if self.finding is None or finding.severity != self.finding.severity:
+            sign, word, color = MARKS[finding.severity]
+            self.mark.setText(sign)
+            self.mark.setStyleSheet(f"color: {color};")
+            self.mark.setToolTip(word)
         self.finding = finding
-        sign, word, color = MARKS[finding.severity]
-        if finding.severity != self._severity:
-            self._severity = finding.severity
-            self._mark.setText(sign)
-            self._mark.setStyleSheet(f"color: {color};")
-            self._mark.setToolTip(word)
+        word = MARKS[finding.severity][1]
         cure = finding.cure
         for label, text in (
-            (self._head, finding.headline),
-            (self._cure, "" if cure is None else cure.text),
-            (self._detail, finding.detail),
+            (self.head, finding.headline),
+            (self.detail, finding.detail),
+            (self.cure, "" if cure is None else cure.text),
         ):
             if label.text() != text:
                 label.setText(text)
                 label.setVisible(bool(text))
-        can_do = cure is not None and bool(cure.moves)
-        if can_do == self._button.isHidden():
-            self._button.setVisible(can_do)
-        self._button.setToolTip(
-            "" if cure is None else f"{cure.text} On the car as planned; can be undone."
-        )
-        self._button.setAccessibleName(f"Do it: {finding.headline}")
         self.setAccessibleName(f"{word}: {finding.headline}")
-        self.setAccessibleDescription(f"{'' if cure is None else cure.text} {finding.detail}")
+        self.setAccessibleDescription(f"{finding.detail} {self.cure.text()}".strip())
+        moves = () if cure is None else cure.moves
+        self.do_it.setVisible(bool(moves))
+        locked = sorted({move.point for move in moves} & layout.locked)
+        self.do_it.setEnabled(not locked)
+        self.do_it.setAccessibleName(f"Do it: {self.cure.text()}")
+        self.do_it.setToolTip(
+            f"The {locked[0]} is locked; unlock it first."
+            if locked
+            else "Make this move on the car as planned (can be undone)"
+        )
 
     def _want_cure(self) -> None:
         self.cure_wanted.emit(self.finding)
 
     def mousePressEvent(self, event: QMouseEvent) -> None:
+        self.setFocus(Qt.FocusReason.MouseFocusReason)
         self.chosen.emit(self.finding)
         event.accept()
 
     def keyPressEvent(self, event: QKeyEvent) -> None:
         if event.key() in (Qt.Key.Key_Return, Qt.Key.Key_Enter, Qt.Key.Key_Space):
             self.chosen.emit(self.finding)
+        elif event.key() in (Qt.Key.Key_Down, Qt.Key.Key_Up):
+            self.focusNextPrevChild(event.key() == Qt.Key.Key_Down)
         else:
             super().keyPressEvent(event)
 
@@ -105,63 +125,66 @@ class FindingsPanel(Card):
     def __init__(self, document: Document, parent: QWidget | None = None) -> None:
         super().__init__("Findings", parent)
         self._document = document
-        self._count = QLabel()
-        self._count.setObjectName("quiet")
-        self.head.addWidget(self._count)
-        self._area = QScrollArea()
-        self._area.setWidgetResizable(True)
-        self._area.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
-        self.body.addWidget(self._area)
+        self.count = QLabel()
+        self.count.setObjectName("quiet")
+        self.head.addWidget(self.count)
+        self.area = QScrollArea()
+        self.area.setWidgetResizable(True)
+        self.area.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
+        self.area.setAccessibleName("Findings")
         holder = QWidget()
+        holder.setObjectName("clear")
         self._column = QVBoxLayout(holder)
         self._column.setContentsMargins(0, 0, 4, 0)
         self._column.setSpacing(2)
-        self._fine = QLabel("Nothing to find fault with in this car, as far as it was measured.")
-        self._fine.setWordWrap(True)
-        self._fine.setObjectName("quiet")
+        self._fine = _text_label("quiet")
+        self._fine.setText(NOTHING)
         self._column.addWidget(self._fine)
         self._column.addStretch(1)
-        self._area.setWidget(holder)
-        self._rows: list[FindingRow] = []
-        self._shown: tuple[Finding, ...] | None = None
+        self.area.setWidget(holder)
+        self.body.addWidget(self.area)
+        self._made: list[FindingRow] = []
+        self._shown: tuple[tuple[Finding, ...], frozenset[str]] | None = None
         document.solved.connect(self.refresh)
         document.opened.connect(self.refresh)
+        document.edited.connect(self.refresh)
         self.refresh()
 
     @property
     def rows(self) -> list[FindingRow]:
-        return self._rows
+        """The rows in sight, worst first."""
+        return self._made[: len(self._shown[0])] if self._shown else []
 
     def refresh(self) -> None:
         """Show the document's findings."""
-        found = self._document.findings
-        if found == self._shown:
+        found, layout = self._document.findings, self._document.layout
+        if self._shown == (found, layout.locked):
             return
-        self._shown = found
-        while len(self._rows) > len(found):
-            row = self._rows.pop()
-            self._column.removeWidget(row)
-            row.hide()
-            row.deleteLater()
-        for row, finding in zip(self._rows, found, strict=False):
-            row.show_finding(finding)
-        for finding in found[len(self._rows):]:
-            row = FindingRow(finding)
+        self._shown = found, layout.locked
+        while len(self._made) < len(found):
+            row = FindingRow()
             row.chosen.connect(self._choose)
-            row.cure_wanted.connect(self._apply_cure)
-            self._column.insertWidget(len(self._rows), row)
-            self._rows.append(row)
+            row.cure_wanted.connect(self._cure)
+            self._column.insertWidget(len(self._made), row)
+            self._made.append(row)
+        for row, finding in zip(self._made, found, strict=False):
+            if row.finding != finding or row.do_it.isVisibleTo(row):
+                row.show_finding(finding, layout)
+            row.setVisible(True)
+        for row in self._made[len(found) :]:
+            row.setVisible(False)
         self._fine.setVisible(not found)
         wrong = sum(f.severity == "wrong" for f in found)
-        self._count.setText(f"{wrong} wrong, {len(found) - wrong} more" if found else "")
+        other = len(found) - wrong
+        parts = [f"{wrong} wrong"] * bool(wrong) + [f"{other} to look at"] * bool(other)
+        self.count.setText(", ".join(parts))
 
     def _choose(self, finding: Finding) -> None:
-        if finding.points:
-            self._document.select(finding.side or "left", finding.points[0])
         self.shown.emit(finding)
 
-    def _apply_cure(self, finding: Finding) -> None:
-        if finding.cure is not None:
-            layout = finding.cure.applied(self._document.settled_layout())
-            text = finding.cure.text.rstrip(".")
-            self._document.apply_layout(text[:1].lower() + text[1:], layout)
+    def _cure(self, finding: Finding) -> None:
+        cure = finding.cure
+        if cure is not None and cure.moves:
+            layout = cure.applied(self._document.settled_layout())
+            words = cure.text.rstrip(".")
+            self._document.apply_layout(words[:1].lower() + words[1:], layout)

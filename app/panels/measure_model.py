@@ -13,10 +13,12 @@ from typing import Any, Literal
 from PySide6.QtCore import QAbstractTableModel, QModelIndex, QPersistentModelIndex, Qt, Signal
 from PySide6.QtGui import QBrush, QColor, QFont
 
+from app import theme
 from app.document import Document
 from geometry.layout import RELAY_POINTS, SIDE_POINTS, Layout, Point, RelayRod, Side, SideName
 from geometry.lengths import (
     format_angle,
+    format_angle_exact,
     format_exact,
     format_length,
     parse_angle,
@@ -24,6 +26,7 @@ from geometry.lengths import (
 )
 
 Index = QModelIndex | QPersistentModelIndex
+_TOP = QModelIndex()
 COLUMNS = ("", "over", "up", "fore")
 COORDINATES = ("over", "up", "fore")
 
@@ -41,7 +44,8 @@ class ValueRow:
 
 def _side_value(field: str) -> tuple[Callable[..., float], Callable[..., Layout]]:
     def write(layout: Layout, side: SideName, value: float | None) -> Layout:
-        changed: Side = replace(layout.side(side), **{field: value or 0.0})
+        given: dict[str, Any] = {field: value or 0.0}
+        changed: Side = replace(layout.side(side), **given)
         return layout.with_side(side, changed)
 
     return (lambda layout, side: getattr(layout.side(side), field)), write
@@ -50,7 +54,8 @@ def _side_value(field: str) -> tuple[Callable[..., float], Callable[..., Layout]
 def _tire_value(field: str) -> tuple[Callable[..., float], Callable[..., Layout]]:
     def write(layout: Layout, side: SideName, value: float | None) -> Layout:
         old = layout.side(side)
-        tire = replace(old.tire, **{field: value or getattr(old.tire, field)})
+        given: dict[str, Any] = {field: value or getattr(old.tire, field)}
+        tire = replace(old.tire, **given)
         return layout.with_side(side, replace(old, tire=tire))
 
     return (lambda layout, side: getattr(layout.side(side).tire, field)), write
@@ -73,6 +78,17 @@ VALUES: tuple[ValueRow, ...] = (
 )
 
 Row = str | ValueRow
+_LONGEST = 20_000.0
+"""Millimeters; a longer car is a slip of the keys or of the unit."""
+
+
+@dataclass(frozen=True)
+class _Refusal:
+    """A typed cell that was not taken: its text, why, and the value that stood there."""
+
+    text: str
+    reason: str
+    value: float | None
 
 
 class MeasureModel(QAbstractTableModel):
@@ -86,7 +102,8 @@ class MeasureModel(QAbstractTableModel):
         self._document = document
         self._side: SideName = "left"
         self._rows: list[Row] = []
-        self._refusals: dict[tuple[int, int], tuple[str, str]] = {}
+        self._units = document.units
+        self._refusals: dict[tuple[int, int], _Refusal] = {}
         self._shown: list[tuple[object, ...]] = []
         self._strong = QFont()
         self._strong.setBold(True)
@@ -116,6 +133,11 @@ class MeasureModel(QAbstractTableModel):
     def refresh(self) -> None:
         """Follow the document: same rows are only repainted."""
         rows = self._wanted_rows()
+        if self._document.units != self._units:
+            self._units = self._document.units
+            self._refusals.clear()
+            self.headerDataChanged.emit(Qt.Orientation.Horizontal, 0, len(COLUMNS) - 1)
+        self._drop_stale_refusals()
         shown = self._shown_rows(rows)
         if rows != self._rows:
             self.beginResetModel()
@@ -140,23 +162,51 @@ class MeasureModel(QAbstractTableModel):
             out.append((layout.units, *values, *was, *refused, row in layout.locked))
         return out
 
+    def _drop_stale_refusals(self) -> None:
+        """A cell whose value was changed otherwise is not waiting to be mended any more."""
+        layout = self._document.layout
+        stale = [
+            at for at, refusal in self._refusals.items()
+            if at[0] >= len(self._rows)
+            or self._value(self._rows[at[0]], at[1], layout) != refusal.value
+        ]
+        for at in stale:
+            del self._refusals[at]
+
+    def refusal(self, index: Index) -> str:
+        """Why what stands in a cell was not taken; empty if it was."""
+        held = self._refusals.get((index.row(), index.column()))
+        return held.reason if held else ""
+
+    def take_back(self, index: Index) -> None:
+        """Show the car's value again where typing was refused."""
+        if self._refusals.pop((index.row(), index.column()), None) is not None:
+            self.dataChanged.emit(index, index)
+            self.refused.emit("")
+
     def row_of(self, name: str) -> int | None:
         """The row of a point, or None if the sheet has none of that name."""
         return self._rows.index(name) if name in self._rows else None
 
     # --- what Qt asks -------------------------------------------------------------
 
-    def rowCount(self, parent: Index = QModelIndex()) -> int:
+    def rowCount(self, parent: Index = _TOP) -> int:
         return 0 if parent.isValid() else len(self._rows)
 
-    def columnCount(self, parent: Index = QModelIndex()) -> int:
+    def columnCount(self, parent: Index = _TOP) -> int:
         return 0 if parent.isValid() else len(COLUMNS)
 
     def headerData(
         self, section: int, orientation: Qt.Orientation, role: int = Qt.ItemDataRole.DisplayRole
     ) -> Any:
-        if role == Qt.ItemDataRole.DisplayRole and orientation == Qt.Orientation.Horizontal:
-            return COLUMNS[section]
+        if orientation != Qt.Orientation.Horizontal:
+            return None
+        if role == Qt.ItemDataRole.DisplayRole:
+            return f"{COLUMNS[section]}, {self._units}" if section else "locked"
+        if role == Qt.ItemDataRole.ToolTipRole and section == 0:
+            return "A checked nail is locked: it can't be dragged or typed away."
+        if role == Qt.ItemDataRole.TextAlignmentRole and section == 0:
+            return Qt.AlignmentFlag.AlignLeft | Qt.AlignmentFlag.AlignVCenter
         return None
 
     def flags(self, index: Index) -> Qt.ItemFlag:
@@ -181,7 +231,7 @@ class MeasureModel(QAbstractTableModel):
             return ""
         units = self._document.units
         if isinstance(row, ValueRow) and row.kind == "angle":
-            return format_angle(value)
+            return format_angle_exact(value) if exact else format_angle(value)
         return format_exact(value, units) if exact else format_length(value, units)
 
     def data(self, index: Index, role: int = Qt.ItemDataRole.DisplayRole) -> Any:
@@ -192,21 +242,33 @@ class MeasureModel(QAbstractTableModel):
         refusal = self._refusals.get((index.row(), column))
         value = self._value(row, column, self._document.layout)
         if role == Qt.ItemDataRole.DisplayRole:
-            return refusal[0] if refusal else self._text(row, value)
+            return refusal.text if refusal else self._text(row, value)
         if role == Qt.ItemDataRole.EditRole:
-            return refusal[0] if refusal else self._text(row, value, exact=True)
+            return refusal.text if refusal else self._text(row, value, exact=True)
         if role == Qt.ItemDataRole.ToolTipRole:
-            return refusal[1] if refusal else self._text(row, value, exact=True)
+            return refusal.reason if refusal else self._tip(row, column, value)
         if role == Qt.ItemDataRole.ForegroundRole and refusal:
-            return QBrush(QColor("#B33A00"))
+            return QBrush(QColor(theme.REFUSED))
+        if role == Qt.ItemDataRole.BackgroundRole and refusal:
+            return QBrush(QColor(theme.REFUSED_GROUND))
         if role == Qt.ItemDataRole.FontRole and self._differs(row, column, value):
             return self._strong
         if role == Qt.ItemDataRole.TextAlignmentRole:
             return Qt.AlignmentFlag.AlignRight | Qt.AlignmentFlag.AlignVCenter
         if role == Qt.ItemDataRole.AccessibleTextRole:
             where = COLUMNS[column] if isinstance(row, str) else ""
-            return f"{label} {where} {self._text(row, value)}".replace("  ", " ")
+            said = f"{refusal.text}, refused" if refusal else self._text(row, value)
+            return f"{label} {where} {said}".replace("  ", " ")
         return None
+
+    def _tip(self, row: Row, column: int, value: float | None) -> str:
+        """The exact value, and the one found where it differs."""
+        exact = self._text(row, value, exact=True)
+        found = self._document.job.found
+        if found is None or not self._differs(row, column, value):
+            return exact
+        was = self._text(row, self._value(row, column, found))
+        return f"{exact}; found at {was}" if was else exact
 
     def _label_data(self, row: Row, label: str, role: int) -> Any:
         if role in (Qt.ItemDataRole.DisplayRole, Qt.ItemDataRole.AccessibleTextRole):
@@ -233,11 +295,15 @@ class MeasureModel(QAbstractTableModel):
 
     def _type(self, at: int, row: Row, column: int, text: str) -> bool:
         """Take a typed cell: an edit of the document, or a refusal with its reason."""
+        layout = self._document.settled_layout()
+        standing = self._text(row, self._value(row, column, layout), exact=True)
+        if (at, column) not in self._refusals and text.strip() == standing:
+            # Opened and closed again: nothing to do.
+            return True
         try:
-            layout = self._typed(row, column, text.strip())
+            layout = self._typed(layout, row, column, text.strip())
         except ValueError as reason:
-            self._refusals[at, column] = (text, str(reason))
-            self.refused.emit(str(reason))
+            self._refuse(at, column, text, str(reason))
             return True
         self._refusals.pop((at, column), None)
         self.refused.emit("")
@@ -246,13 +312,42 @@ class MeasureModel(QAbstractTableModel):
         self._document.apply_layout(f"{verb} {label}", layout)
         return True
 
-    def _typed(self, row: Row, column: int, text: str) -> Layout:
-        """The car with one cell as typed; ValueError with a plain reason."""
+    def _refuse(self, at: int, column: int, text: str, reason: str) -> None:
+        value = self._value(self._rows[at], column, self._document.layout)
+        self._refusals[at, column] = _Refusal(text, reason, value)
+        index = self.index(at, column)
+        self.dataChanged.emit(index, index)
+        self.refused.emit(reason)
+
+    def paste(self, start: Index, text: str) -> None:
+        """Type a block of cells, tabs between columns and lines between rows, as one step.
+
+        What can't be read is refused in its cell; the others are taken.
+        """
         layout = self._document.settled_layout()
+        refused: list[tuple[int, int, str, str]] = []
+        for at, line in enumerate(text.rstrip("\n").split("\n"), start.row()):
+            for column, cell in enumerate(line.rstrip("\r").split("\t"), start.column()):
+                if at >= len(self._rows) or column >= len(COLUMNS):
+                    continue
+                if not self.flags(self.index(at, column)) & Qt.ItemFlag.ItemIsEditable:
+                    continue
+                self._refusals.pop((at, column), None)
+                try:
+                    layout = self._typed(layout, self._rows[at], column, cell.strip())
+                except ValueError as reason:
+                    refused.append((at, column, cell, str(reason)))
+        self._document.apply_layout("paste measures", layout)
+        self.refused.emit("")
+        for at, column, cell, why in refused:
+            self._refuse(at, column, cell, why)
+
+    def _typed(self, layout: Layout, row: Row, column: int, text: str) -> Layout:
+        """A car with one cell as typed; ValueError with a plain reason."""
         if isinstance(row, str):
             if row in layout.locked:
                 raise ValueError(f"The {row} is locked. Take its check mark away to move it.")
-            place = parse_length(text, self._document.units)
+            place = _believable(parse_length(text, self._document.units))
             point: Point = layout.point(self._side, row)
             moved = point._replace(**{COORDINATES[column - 1]: place})
             return layout.with_point(self._side, row, moved)
@@ -263,7 +358,14 @@ class MeasureModel(QAbstractTableModel):
             if abs(angle) > 0.8:
                 raise ValueError(f"{text} is too far for the {row.label}; 45° is the most.")
             return row.write(layout, self._side, angle)
-        length = parse_length(text, self._document.units)
+        length = _believable(parse_length(text, self._document.units))
         if length <= 0.0:
             raise ValueError(f"The {row.label} has to be more than nothing.")
         return row.write(layout, self._side, length)
+
+
+def _believable(length: float) -> float:
+    """The length, unless it is longer than any car."""
+    if abs(length) > _LONGEST:
+        raise ValueError("No car is that long; is the unit right?")
+    return length

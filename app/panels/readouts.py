@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from PySide6.QtCore import Qt
+from PySide6.QtCore import QEvent, Qt
 from PySide6.QtWidgets import (
     QAbstractItemView,
     QHeaderView,
@@ -23,19 +23,21 @@ class ReadoutsPanel(Card):
     def __init__(self, document: Document, parent: QWidget | None = None) -> None:
         super().__init__("Readouts", parent)
         self._document = document
-        self._table = QTableWidget(0, 4)
-        self._table.setAccessibleName("Readouts")
-        self._table.setShowGrid(False)
-        self._table.setEditTriggers(QAbstractItemView.EditTrigger.NoEditTriggers)
-        self._table.setSelectionMode(QAbstractItemView.SelectionMode.SingleSelection)
-        self._table.verticalHeader().hide()
-        self._table.setHorizontalHeaderLabels(["", "planned", "found", "change"])
-        header = self._table.horizontalHeader()
+        self.table = QTableWidget(0, 4)
+        self.table.setAccessibleName("Readouts")
+        self.table.setShowGrid(False)
+        self.table.setEditTriggers(QAbstractItemView.EditTrigger.NoEditTriggers)
+        self.table.setSelectionMode(QAbstractItemView.SelectionMode.SingleSelection)
+        self.table.verticalHeader().hide()
+        self.table.setHorizontalHeaderLabels(["", "planned", "found", "change"])
+        header = self.table.horizontalHeader()
         header.setSectionResizeMode(QHeaderView.ResizeMode.ResizeToContents)
         header.setSectionResizeMode(0, QHeaderView.ResizeMode.Stretch)
         header.setDefaultAlignment(Qt.AlignmentFlag.AlignRight)
-        self.body.addWidget(self._table)
+        self.body.addWidget(self.table)
         self._rows: list[tuple[Readout, SideName]] = []
+        self._items: dict[tuple[int, int], QTableWidgetItem] = {}
+        self.table.setTabKeyNavigation(False)
         document.solved.connect(self.refresh)
         document.opened.connect(self.refresh)
         self.refresh()
@@ -67,9 +69,9 @@ class ReadoutsPanel(Card):
             self._build(rows)
         planned, found = self._document.solution, self._document.found_solution
         units = self._document.units
-        if self._table.isColumnHidden(2) != (found is None):
+        if self.table.isColumnHidden(2) != (found is None):
             for column in (2, 3):
-                self._table.setColumnHidden(column, found is None)
+                self.table.setColumnHidden(column, found is None)
         for row, (readout, side) in enumerate(rows):
             value = readout.read(planned, side)
             unit = unit_words(readout.unit, units)
@@ -80,9 +82,9 @@ class ReadoutsPanel(Card):
             self._put(row, 1, format_readout(readout.unit, value, units))
             tip = readout.tip if value is not None else readout.missing
             # Every set is a repaint of its own; most frames change no tip.
-            if self._table.item(row, 0).toolTip() != tip:
+            if self._items[row, 0].toolTip() != tip:
                 for column in range(4):
-                    self._table.item(row, column).setToolTip(tip)
+                    self._items[row, column].setToolTip(tip)
             if found is not None:
                 was = readout.read(found, side)
                 self._put(row, 2, format_readout(readout.unit, was, units))
@@ -90,20 +92,32 @@ class ReadoutsPanel(Card):
 
     def _build(self, rows: list[tuple[Readout, SideName]]) -> None:
         self._rows = rows
-        self._table.setRowCount(len(rows))
-        height = self._table.fontMetrics().height() + 5
+        self.table.setRowCount(len(rows))
         for row in range(len(rows)):
-            self._table.setRowHeight(row, height)
             for column in range(4):
                 item = QTableWidgetItem()
                 if column:
                     item.setTextAlignment(
                         Qt.AlignmentFlag.AlignRight | Qt.AlignmentFlag.AlignVCenter
                     )
-                self._table.setItem(row, column, item)
+                self.table.setItem(row, column, item)
+                self._items[row, column] = item
+        self._size()
+
+    def _size(self) -> None:
+        """Rows as high as the letters need."""
+        height = self.table.fontMetrics().height() + 5
+        self.table.verticalHeader().setMinimumSectionSize(1)
+        self.table.verticalHeader().setDefaultSectionSize(height)
+        self.table.horizontalHeader().setFixedHeight(height)
+
+    def changeEvent(self, event: QEvent) -> None:
+        super().changeEvent(event)
+        if event.type() == QEvent.Type.FontChange and hasattr(self, "table"):
+            self._size()
 
     def _put(self, row: int, column: int, text: str) -> None:
-        item = self._table.item(row, column)
+        item = self._items[row, column]
         if item.text() != text:
             item.setText(text)
 
@@ -111,5 +125,5 @@ class ReadoutsPanel(Card):
         """What stands in the table for a figure (for tests and the clipboard)."""
         for row, (readout, its_side) in enumerate(self._rows):
             if readout.key == key and its_side == side:
-                return self._table.item(row, column).text()
+                return self._items[row, column].text()
         raise KeyError(key)

@@ -1,25 +1,52 @@
-"""The row above the floor: wheel travel, rack and units, each by slider or typed."""
+"""The row above the floor: wheel travel and rack, each by slider or typed."""
 
 from __future__ import annotations
 
-from PySide6.QtCore import Qt, Signal
-from PySide6.QtWidgets import QComboBox, QHBoxLayout, QLabel, QLineEdit, QSlider, QWidget
+from PySide6.QtCore import QEvent, QObject, Qt, Signal
+from PySide6.QtGui import QKeyEvent
+from PySide6.QtWidgets import (
+    QComboBox,
+    QHBoxLayout,
+    QLabel,
+    QLineEdit,
+    QSizePolicy,
+    QSlider,
+    QWidget,
+)
 
+from app import theme
 from app.document import Document
 from geometry.lengths import format_length, parse_length
 
 _STEPS_PER_MM = 4
+_FARTHEST = 500.0
+"""What can be typed, mm; the slider's reach is shorter."""
+
+
+class LengthField(QLineEdit):
+    """A field for one length: Esc takes back what was typed, Enter keeps the words marked."""
+
+    def keyPressEvent(self, event: QKeyEvent) -> None:
+        if event.key() == Qt.Key.Key_Escape and self.isModified():
+            self.undo_typing.emit()
+            return
+        super().keyPressEvent(event)
+
+    undo_typing = Signal()
 
 
 class LengthControl(QWidget):
     """A label, a slider and a field that reads tape text; all three show one length."""
 
     moved = Signal(float)
+    refused = Signal(str)
+    """Why what was typed was not taken; empty when it was."""
 
     def __init__(self, label: str, reach: float, document: Document) -> None:
         super().__init__()
         self._document = document
         self._value = 0.0
+        plain = label.replace("&", "")
         row = QHBoxLayout(self)
         row.setContentsMargins(0, 0, 0, 0)
         name = QLabel(label)
@@ -27,18 +54,29 @@ class LengthControl(QWidget):
         self.slider.setRange(-round(reach * _STEPS_PER_MM), round(reach * _STEPS_PER_MM))
         self.slider.setPageStep(round(25 * _STEPS_PER_MM))
         self.slider.setSingleStep(_STEPS_PER_MM)
-        self.slider.setMinimumWidth(70)
-        self.slider.setAccessibleName(label)
-        self.field = QLineEdit("0")
-        self.field.setAccessibleName(f"{label}, typed")
-        self.field.setFixedWidth(self.field.fontMetrics().horizontalAdvance("−12 15/16  "))
+        self.slider.setAccessibleName(plain)
+        self.field = LengthField("0")
+        self.field.setAccessibleName(f"{plain}, typed")
         self.field.setAlignment(Qt.AlignmentFlag.AlignRight)
         name.setBuddy(self.field)
         for widget in (name, self.slider, self.field):
             row.addWidget(widget)
         row.setStretch(1, 1)
+        self.setSizePolicy(QSizePolicy.Policy.Expanding, QSizePolicy.Policy.Preferred)
+        self._size()
         self.slider.valueChanged.connect(self._slid)
         self.field.editingFinished.connect(self._typed)
+        self.field.undo_typing.connect(self._take_back)
+
+    def _size(self) -> None:
+        width = self.fontMetrics().horizontalAdvance("−12 15/16  ")
+        self.field.setFixedWidth(width + 8)
+        self.slider.setMinimumWidth(70)
+
+    def changeEvent(self, event: QEvent) -> None:
+        super().changeEvent(event)
+        if event.type() == QEvent.Type.FontChange:
+            self._size()
 
     def show_value(self, value: float) -> None:
         """Show a length, mm, without telling anyone."""
@@ -46,12 +84,23 @@ class LengthControl(QWidget):
         blocked = self.slider.blockSignals(True)
         self.slider.setValue(round(value * _STEPS_PER_MM))
         self.slider.blockSignals(blocked)
-        if not self.field.hasFocus() or not self.field.isModified():
-            self.field.setText(format_length(value, self._document.units))
-            self.field.setStyleSheet("")
-            self.field.setToolTip("")
+        if not self.field.isModified():
+            self._show_text()
+
+    def _show_text(self) -> None:
+        self.field.setText(format_length(self._value, self._document.units))
+        self.field.setStyleSheet("")
+        self.field.setToolTip("")
+
+    def _take_back(self) -> None:
+        self._show_text()
+        self.field.selectAll()
+        self.refused.emit("")
 
     def _slid(self, steps: int) -> None:
+        # What was typed and refused gives way to the hand on the slider.
+        self.field.setModified(False)
+        self.refused.emit("")
         self.moved.emit(steps / _STEPS_PER_MM)
 
     def _typed(self) -> None:
@@ -59,24 +108,30 @@ class LengthControl(QWidget):
             return
         try:
             value = parse_length(self.field.text() or "0", self._document.units)
+            if abs(value) > _FARTHEST:
+                raise ValueError("No car's suspension or rack goes that far.")
         except ValueError as reason:
-            self.field.setStyleSheet("color: #B33A00;")
+            self.field.setStyleSheet(f"color: {theme.REFUSED};")
             self.field.setToolTip(str(reason))
+            self.refused.emit(str(reason))
             return
         self.field.setModified(False)
+        self.refused.emit("")
         self.moved.emit(value)
         self.show_value(value)
 
 
-class StanceBar(QWidget):
-    """Where the wheels and the rack stand on the floor. Not part of the car, so no undo."""
+class StanceBar(QObject):
+    """Where the wheels and the rack stand on the floor. Not part of the car, so no undo.
 
-    def __init__(self, document: Document, parent: QWidget | None = None) -> None:
+    Holds the three widgets ``which``, ``travel`` and ``rack``; the window places them.
+    """
+
+    refused = Signal(str)
+
+    def __init__(self, document: Document, parent: QObject | None = None) -> None:
         super().__init__(parent)
         self._document = document
-        row = QHBoxLayout(self)
-        row.setContentsMargins(0, 0, 0, 0)
-        row.setSpacing(12)
         self.which = QComboBox()
         self.which.addItems(["Both wheels", "Left wheel", "Right wheel"])
         self.which.setAccessibleName("Which wheel the travel moves")
@@ -84,11 +139,10 @@ class StanceBar(QWidget):
         self.travel.setToolTip("Wheel travel against the body; bump positive, droop negative")
         self.rack = LengthControl("&Rack", 100.0, document)
         self.rack.setToolTip("Rack or pitman end moved to the car's left, positive")
-        row.addWidget(self.which)
-        row.addWidget(self.travel, 1)
-        row.addWidget(self.rack, 1)
         self.travel.moved.connect(self._set_travel)
         self.rack.moved.connect(document.set_rack)
+        self.travel.refused.connect(self.refused)
+        self.rack.refused.connect(self.refused)
         self.which.currentIndexChanged.connect(self.refresh)
         document.solved.connect(self.refresh)
         document.edited.connect(self.refresh)
