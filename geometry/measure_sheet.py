@@ -209,6 +209,8 @@ def _read_word(row: Row, reading: _Reading) -> None:
         reading.fault(row, f'read side "{printable(text)}", expected left or right.')
     elif row.item == "title" and len(text) > TITLE_LIMIT:
         reading.fault(row, f"read a title of {len(text)} letters, expected {TITLE_LIMIT} at most.")
+    elif any(0xD800 <= ord(letter) <= 0xDFFF for letter in text):
+        reading.fault(row, f"the {row.item} holds half a letter that can't be written.")
     reading.words[row.item] = text.lower() if row.item == BOX_SIDE else text
 
 

@@ -97,6 +97,12 @@ def test_a_sheet_gives_no_wheelbase_that_a_layout_file_refuses() -> None:
     assert job_to_text(measure_sheet_from_text("\n".join(least)))
 
 
+def test_a_sheet_gives_no_title_that_a_layout_file_refuses() -> None:
+    halved = SHEET_TEXTS[0].replace("title,", "title,\ud800", 1)
+    with pytest.raises(MeasureSheetError, match="half a letter"):
+        measure_sheet_from_text(halved)
+
+
 def test_a_row_without_end_is_called_that() -> None:
     with pytest.raises(MeasureSheetError, match=r"read 200,000 letters, expected one row"):
         measure_sheet_from_text("item,value,over,up,fore\n" + "9" * 200_000)

@@ -27,6 +27,7 @@ from geometry.layout import (
 from geometry.plan_view import TOE_OUT_ANGLE, plan_of
 from geometry.solution import solve
 from geometry.steering_arm import arm_for_percent, string_check
+from tests.outside.witness import witness
 
 pytestmark = pytest.mark.outside
 
@@ -38,10 +39,13 @@ ARM = 6.0 * MM_PER_INCH
 def test_ackermann_condition_as_worked_in_textbooks() -> None:
     # From memory: R. N. Jazar, Vehicle Dynamics (2008), ch. 7: wheelbase 103.1, track 61.6,
     # inner 0.209 rad gives outer 0.186 rad.
-    assert float(ideal_outer(0.209, 61.6 / 103.1)) == pytest.approx(0.186, abs=5e-4)
+    jazar = "R. N. Jazar, Vehicle Dynamics, ch. 7 (from memory)"
+    outer = float(ideal_outer(0.209, 61.6 / 103.1))
+    witness(jazar, "inner wheel at 0.209: outer, rad", 0.186, outer, 5e-4)
     # From memory: S. S. Rattan, Theory of Machines: ratio 0.44, inner 18 gives outer 15.9.
     outer = np.degrees(ideal_outer(np.radians(18.0), 0.44))
-    assert float(outer) == pytest.approx(15.9, abs=0.05)
+    rattan = "S. S. Rattan, Theory of Machines (from memory)"
+    witness(rattan, "inner wheel at 18°: outer, degrees", 15.9, float(outer), 0.05)
 
 
 def test_ideal_toe_out_on_turns() -> None:
@@ -49,7 +53,8 @@ def test_ideal_toe_out_on_turns() -> None:
     # cot(outer) - cot(inner) = spacing / wheelbase; spacing 56, wheelbase 112 gives 23.986.
     assert pytest.approx(np.radians(20.0)) == TOE_OUT_ANGLE
     inner = np.degrees(ideal_inner(TOE_OUT_ANGLE, 56.0 / 112.0))
-    assert float(inner) == pytest.approx(23.986, abs=5e-4)
+    manual = "US Army TM 9-8000, para 33-17"
+    witness(manual, "outer wheel at 20°: ideal inner, degrees", 23.986, float(inner), 5e-4)
 
 
 def test_davis_gear_meets_the_condition_at_every_angle() -> None:
@@ -62,7 +67,9 @@ def test_davis_gear_meets_the_condition_at_every_angle() -> None:
     outer = np.arctan(lean) - np.arctan(lean - slide / depth)
     larger, smaller = np.maximum(inner, outer), np.minimum(inner, outer)
     percent = percent_ackermann(larger, smaller, ratio)
-    assert percent == pytest.approx(np.full(30, 100.0), abs=1e-9)
+    davis = "Davis's steering gear, exact"
+    witness(davis, "least percent Ackermann of 30 places", 100.0, float(percent.min()), 1e-9)
+    witness(davis, "most percent Ackermann of 30 places", 100.0, float(percent.max()), 1e-9)
 
 
 def upright_corner(lean: float, tie_inner: Point | None = None) -> Side:
@@ -116,7 +123,8 @@ def test_a_one_piece_tie_rod_on_the_string_has_little_more_than_half_of_ackerman
     inner, outer = one_piece_rod(side, np.array([1.0, 2.0, 25.0, 50.0, 75.0]))
     percent = percent_ackermann(inner, outer, SPACING / BASE)
     near = percent[0] - outer[0] * (percent[1] - percent[0]) / (outer[1] - outer[0])
-    assert near == pytest.approx(52.7, abs=0.05)
+    trapezium = "Trapezium of a one-piece tie rod, worked on its own"
+    witness(trapezium, "percent Ackermann near straight ahead", 52.7, float(near), 0.05)
     assert np.all(np.diff(percent) > 0.0)
     assert outer[-1] > np.radians(25.0)
 
@@ -142,7 +150,8 @@ def test_a_one_piece_tie_rod_agrees_with_the_trapezium_solved_on_its_own() -> No
             return float(np.linalg.norm(gap) - rod)
 
         expected = brentq(longer, 0.0, 1.2, xtol=1e-14)
-        assert found == pytest.approx(expected, abs=1e-10)
+        words = f"outer wheel at {np.degrees(out):.1f}°: inner, rad"
+        witness("Four bars in a plane, by a root finder", words, expected, float(found), 1e-10)
 
 
 def test_string_check_lean_is_davis_s_arm_angle() -> None:
@@ -150,7 +159,8 @@ def test_string_check_lean_is_davis_s_arm_angle() -> None:
     # the string to the middle of the rear axle makes the same angle.
     check = string_check(Layout(upright_corner(0.0), wheelbase=BASE), "left")
     assert check is not None
-    assert np.tan(-check.needed.lean) == pytest.approx(SPACING / (2.0 * BASE), abs=1e-12)
+    lean = float(np.tan(-check.needed.lean))
+    witness("Davis's steering gear, exact", "tangent of the arm's lean", 0.25, lean, 1e-12)
 
 
 def test_an_arm_cut_for_full_ackermann_shows_the_manual_s_toe_out() -> None:
@@ -165,5 +175,6 @@ def test_an_arm_cut_for_full_ackermann_shows_the_manual_s_toe_out() -> None:
     assert plan.spacing == pytest.approx(SPACING)
     toe_out = plan.toe_out["left"]
     assert toe_out is not None
-    assert np.degrees(toe_out.inner) == pytest.approx(23.986, abs=1e-3)
+    manual, inner = "US Army TM 9-8000, para 33-17", float(np.degrees(toe_out.inner))
+    witness(manual, "arm cut for it: inner wheel with the outer at 20°", 23.986, inner, 1e-3)
     assert np.degrees(toe_out.excess) == pytest.approx(3.986, abs=1e-3)
