@@ -91,6 +91,7 @@ class Commands(QObject):
         for kind, words in kinds:
             self.add(new, f"new {kind}", words, partial(self.new, kind),
                      standard.New if kind == "A-arm" else None)
+        self.add(new, "sketch", "S&ketch from figures…", self.sketch, "Ctrl+Shift+N")
         self.add(menu, "open", "&Open…", self.open, standard.Open, icon="open")
         self.samples = menu.addMenu("Open sa&mple")
         for path in sample_paths():
@@ -216,6 +217,16 @@ class Commands(QObject):
     def new(self, kind: str) -> None:
         """A car of a kind with plausible measures to type over."""
         self.window.open_new(measure_sheet_from_text(starting_sheet(kind)))
+
+    def sketch(self) -> None:
+        """A front end from what is known and wanted, laid out ready to drag."""
+        from app.panels.sketch_dialog import SketchDialog
+
+        dialog = SketchDialog(self.document.units, self.window)
+        dialog.exec()
+        if dialog.job is not None:
+            self.window.open_new(dialog.job)
+        dialog.deleteLater()
 
     def open(self) -> None:
         path = files.ask_open(self.window)

@@ -13,6 +13,7 @@ from app.document import Document
 from app.motion import BumpMotion
 from app.panels.loads_dialog import LoadsDialog
 from app.panels.no_go_dialog import NoGoDialog
+from app.panels.sketch_dialog import SketchDialog
 from app.panels.stance_dialog import StanceDialog
 from app.panels.wheel_dialog import WheelDialog
 from app.watch import RoomWatch
@@ -210,3 +211,25 @@ def test_an_older_question_is_dropped(qtbot):
         background.ask(lambda stopped: 1 / 0)
     assert "ZeroDivisionError" in trouble.args[0]
     background.finish()
+
+
+def test_a_sketch_is_laid_out_from_typed_figures(qtbot):
+    dialog = SketchDialog("in")
+    qtbot.addWidget(dialog)
+    type_into(qtbot, dialog.form.fields["roll_center"].field, "1 1/2")
+    type_into(qtbot, dialog.angles.fields["camber_gain"].field, "0.9")
+    qtbot.waitUntil(dialog.ok.isEnabled, timeout=10_000)
+    dialog.ok.click()
+    assert dialog.job is not None
+    solution = solve(dialog.job.planned)
+    assert solution.ride_roll_center[1] == pytest.approx(38.1, abs=0.2)
+    assert 25.4 * 57.29578 / solution.left.ride_view.swing_arm[0] == pytest.approx(0.9, rel=0.01)
+
+
+def test_a_frame_too_wide_to_sketch_is_refused_in_words(qtbot):
+    dialog = SketchDialog("mm")
+    qtbot.addWidget(dialog)
+    type_into(qtbot, dialog.form.fields["frame_half"].field, "640")
+    dialog.refresh()
+    assert "no lower arm fits" in dialog.answer.text()
+    assert not dialog.ok.isEnabled()
