@@ -156,7 +156,11 @@ def held_travel(corner: Corner, travel: Array) -> HeldMotion:
             gap = motion.travel - travel
             if not np.any(np.abs(gap) > 1e-9):
                 break
-            after = np.clip(now - gap * (now - before) / (gap - gap_before), low, high)
+            # A pose that is found stays put while others are still looked for: two steps from
+            # the same place have no slope and would throw it anywhere.
+            settled = np.abs(gap) <= 1e-10
+            move = np.where(settled, 0.0, gap * (now - before) / (gap - gap_before))
+            after = np.clip(now - move, low, high)
             after = np.where(np.isfinite(after), after, now)
             before, gap_before, now = now, gap, after
         ok = motion.assembles & (np.abs(gap) < 1e-6)

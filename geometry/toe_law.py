@@ -66,15 +66,18 @@ class ToeLaw:
         NaN where a rod can't reach, or the toe would pass a right angle, in any pose.
         """
         count = rods.shape[1]
+        if not count:
+            return np.empty(0)
         blocks = -(-count // BLOCK)
-        padded = np.ones((4, blocks * BLOCK))
+        block = -(-count // blocks)
+        padded = np.ones((4, blocks * block))
         padded[1:, :count] = rods
-        padded[1:, count:] = rods[:, -1:] if count else 0.0
-        most, least = np.empty(blocks * BLOCK), np.empty(blocks * BLOCK)
-        room = [np.empty((self.travel.size, BLOCK)) for _ in range(3)]
+        padded[1:, count:] = rods[:, -1:]
+        most, least = np.empty(blocks * block), np.empty(blocks * block)
+        room = [np.empty((self.travel.size, block)) for _ in range(3)]
         with np.errstate(all="ignore"):
-            for start in range(0, blocks * BLOCK, BLOCK):
-                part = slice(start, start + BLOCK)
+            for start in range(0, blocks * block, block):
+                part = slice(start, start + block)
                 slope, over = self._slopes(padded[:, part], *room)
                 np.max(slope, axis=0, out=most[part])
                 np.min(slope, axis=0, out=least[part])
