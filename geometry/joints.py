@@ -82,7 +82,10 @@ def _angle(a: Array, b: Array) -> Array:
 
 
 def _knuckle_edges(poses: Poses) -> tuple[Array, Array]:
-    return poses.spin_axis, poses.upper_ball - poses.lower_ball
+    """Two directions that ride with the knuckle."""
+    # A strut slides through its top mount, so only its lower mount stays where it is.
+    upper = poses.upper_ball if poses.strut_lower is None else poses.strut_lower
+    return poses.spin_axis, upper - poses.lower_ball
 
 
 def _turn(before: tuple[Array, Array], now: tuple[Array, Array]) -> Array:

@@ -82,14 +82,20 @@ def toe_length(state: CornerState, toe: Array | float) -> Array:
 def bump_steer(state: CornerState) -> float | None:
     """Toe-in gained per travel where the wheel now stands, mm of toe per mm of travel.
 
-    The slope of the toe curve between the sweep's neighbors of the present travel.
+    The slope, there, of the parabola through the three nearest places of the sweep; beyond
+    the sweep the slope between two poses of their own.
     """
-    sweep = state.sweep
-    toe = toe_length(state, sweep.toe)
-    here = int(np.argmin(np.abs(sweep.travel - state.now.travel[0])))
-    low, high = max(here - 1, 0), min(here + 1, toe.size - 1)
-    slope = (toe[high] - toe[low]) / (sweep.travel[high] - sweep.travel[low])
-    return _scalar(slope)
+    travel, here = state.sweep.travel, float(state.now.travel[0])
+    if not travel[0] <= here <= travel[-1]:
+        near = state.corner.poses(here + np.array([-0.1, 0.1]), state.shift)
+        low, high = toe_length(state, near.toe)
+        return _scalar((high - low) / 0.2)
+    toe = toe_length(state, state.sweep.toe)
+    middle = min(max(int(np.argmin(np.abs(travel - here))), 1), toe.size - 2)
+    (a, b, c), (ta, tb, tc) = (v[middle - 1 : middle + 2] for v in (toe, travel))
+    before, after = (b - a) / (tb - ta), (c - b) / (tc - tb)
+    bend = (after - before) / (tc - ta)
+    return _scalar(before + bend * (2.0 * here - ta - tb))
 
 
 def _toe_range(solution: Solution, side: SideName) -> float | None:

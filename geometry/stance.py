@@ -25,6 +25,7 @@ from geometry.layout import (
     Side,
 )
 from geometry.linkage import Array
+from geometry.springs import lower_mount
 
 
 @dataclass(frozen=True)
@@ -69,7 +70,7 @@ def by_spring(layout: Layout, drop: float) -> Layout:
     out = replace(
         layout, left=sides[0][0], right=None if layout.linked else sides[1][0]
     )
-    return _body_things_down(out, fall)
+    return body_things_down(out, fall)
 
 
 def _sprung(side: Side, drop: float) -> tuple[Side, float]:
@@ -100,8 +101,17 @@ def _sprung(side: Side, drop: float) -> tuple[Side, float]:
     points = {name: _down(p, rise) for name, p in side.points.items()}
     points |= {name: _down(Point(p[1], p[2], p[0]), rise) for name, p in moved.items()}
     if names.SPRING_LOWER in points:
-        # The spring's lower mount rides on the arm; carry it there by the arm's own swing.
-        points[names.SPRING_LOWER] = _down(_on_lower_arm(corner, side, float(swing[0])), rise)
+        # The spring's lower mount rides on its arm or knuckle, wherever that went.
+        lower = corner.lower_ball_at(swing)
+        held = replace(
+            poses,
+            lower_ball=lower,
+            upper_ball=np.broadcast_to(corner.guide.upper(lower)[0], lower.shape),
+            tie_outer=outer,
+            strut_lower=strut if corner.is_strut else None,
+        )
+        mount = lower_mount(side, corner, held)[:, 0]
+        points[names.SPRING_LOWER] = _down(Point(mount[1], mount[2], mount[0]), rise)
     camber = float(-math.asin(float(np.clip(spin[2, 0], -1.0, 1.0))))
     return replace(side, points=points, static_camber=camber), rise
 
@@ -152,27 +162,9 @@ def _ride_contact(corner: Corner) -> float:
     return float(contact_point(corner.wheel_center, corner.spin_axis, corner.tire_radius)[2, 0])
 
 
-def _on_lower_arm(corner: Corner, side: Side, swing: float) -> Point:
-    """A point of the lower arm turned about the arm's inner axis by ``swing`` rad."""
-    axis = (corner.lower_front - corner.lower_rear)[:, 0]
-    axis = axis / np.linalg.norm(axis)
-    base = corner.lower_rear[:, 0]
-    lift = np.cross(axis, corner.lower_ball[:, 0] - base)
-    turn = swing if lift[2] >= 0.0 else -swing
-    point = side[names.SPRING_LOWER]
-    arm = np.array([point.fore, point.over, point.up]) - base
-    turned = (
-        arm * math.cos(turn)
-        + np.cross(axis, arm) * math.sin(turn)
-        + axis * float(axis @ arm) * (1.0 - math.cos(turn))
-    )
-    place = base + turned
-    return Point(float(place[1]), float(place[2]), float(place[0]))
-
-
 def by_spindle(layout: Layout, drop: float) -> Layout:
     """A dropped knuckle: the wheel sits higher on it, every other pivot nearer the floor."""
-    return _body_things_down(
+    return body_things_down(
         _each_side(
             layout,
             lambda side: replace(
@@ -199,7 +191,7 @@ def by_tire(layout: Layout, drop: float) -> Layout:
             tire=replace(side.tire, radius=side.tire.radius - drop),
         )
 
-    return _body_things_down(_each_side(layout, change), drop)
+    return body_things_down(_each_side(layout, change), drop)
 
 
 def raked(layout: Layout, nose_down: float) -> Layout:
@@ -240,7 +232,7 @@ def _down(point: Point, drop: float) -> Point:
     return Point(point.over, point.up - drop, point.fore)
 
 
-def _body_things_down(layout: Layout, drop: float) -> Layout:
+def body_things_down(layout: Layout, drop: float) -> Layout:
     """What hangs on the body besides the sides' points: steering, mass center, front no-gos."""
     steering = layout.steering
     if isinstance(steering, RelayRod):

@@ -10,17 +10,23 @@ import re
 from dataclasses import dataclass, replace
 
 from geometry.layout import MM_PER_INCH, WHEEL_CENTER, Layout, Point, Side, SideName, Tire
+from geometry.stance import body_things_down
 
 LOADED_SHARE = 0.97
 """Loaded radius over free radius for a road tire at its pressure (common practice, no source)."""
 
 _METRIC = re.compile(
-    r"(?:P|LT)?\s*(\d{2,3})\s*/\s*(\d{2,3})\s*(?:Z?R|-|B|D)\s*(\d{2}(?:[.,]\d)?)", re.I
+    r"(?:P|LT)?\s*(\d{2,3})\s*/\s*(\d{2,3})\s*(?:[SHVZ]?R|-|B|D)\s*(\d{2}(?:[.,]\d)?)", re.I
 )
+_FULL = re.compile(r"(\d{3})\s*[SHV]?R\s*(\d{2})", re.I)
 _INCH = re.compile(
     r"(\d{2}(?:\.\d+)?)\s*[xX×]\s*(\d{1,2}(?:\.\d+)?)\s*(?:R|-|–)?\s*(\d{2}(?:\.\d)?)", re.I
 )
 _OLD = re.compile(r"(\d{1,2}\.\d{2})\s*-\s*(\d{2}(?:\.\d)?)")
+
+
+FULL_PROFILE = 0.82
+"""Aspect of a metric size that names none, such as 165R13 (common practice, no source)."""
 
 
 class TireSizeError(ValueError):
@@ -42,7 +48,7 @@ class TireSize:
 
 
 def parse_tire_size(text: str) -> TireSize:
-    """A tire size such as ``205/55R16``, ``31x10.5R15`` or ``6.00-16`` (inches).
+    """A tire size such as ``205/55R16``, ``165R13``, ``31x10.5R15`` or ``6.00-16`` (inches).
 
     Raises TireSizeError with a plain reason.
     """
@@ -52,6 +58,10 @@ def parse_tire_size(text: str) -> TireSize:
         width, aspect = float(metric[1]), float(metric[2]) / 100.0
         rim = float(metric[3].replace(",", ".")) * MM_PER_INCH
         return _checked(TireSize(width, rim + 2.0 * width * aspect, rim), shown)
+    full = _FULL.match(shown)
+    if full is not None:
+        width, rim = float(full[1]), float(full[2]) * MM_PER_INCH
+        return _checked(TireSize(width, rim + 2.0 * width * FULL_PROFILE, rim), shown)
     inch = _INCH.match(shown)
     if inch is not None:
         diameter, width, rim = (float(part) * MM_PER_INCH for part in inch.groups())
@@ -107,4 +117,6 @@ def wheel_changed(layout: Layout, side: SideName, tire: Tire) -> Layout:
     center: Point = points[WHEEL_CENTER]
     points[WHEEL_CENTER] = center._replace(over=center.over + out)
     changed: Side = replace(old, points=points, tire=tire)
-    return layout.with_side(side, changed)
+    # One side's rise lifts the middle of the car by half of it.
+    lift = rise if layout.linked else 0.5 * rise
+    return body_things_down(layout.with_side(side, changed), -lift)
