@@ -113,6 +113,7 @@ def _sprung(side: Side, drop: float) -> tuple[Side, float]:
         mount = lower_mount(side, corner, held)[:, 0]
         points[names.SPRING_LOWER] = _down(Point(mount[1], mount[2], mount[0]), rise)
     camber = float(-math.asin(float(np.clip(spin[2, 0], -1.0, 1.0))))
+    points = {name: _clean(p) for name, p in points.items()}
     return replace(side, points=points, static_camber=camber), rise
 
 
@@ -226,6 +227,11 @@ def raked(layout: Layout, nose_down: float) -> Layout:
 def _each_side(layout: Layout, change: Callable[[Side], Side]) -> Layout:
     right = None if layout.right is None else change(layout.right)
     return replace(layout, left=change(layout.left), right=right)
+
+
+def _clean(point: Point) -> Point:
+    """A place to a picometer: what is finer is rounding, and reads badly in a sheet."""
+    return Point(*(round(float(part), 9) + 0.0 for part in point))
 
 
 def _down(point: Point, drop: float) -> Point:
