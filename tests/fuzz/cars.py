@@ -22,6 +22,7 @@ from collections.abc import Callable, Iterator
 from typing import Any
 
 import numpy as np
+import shapely
 from numpy.typing import NDArray
 
 from geometry import layout as names
@@ -38,16 +39,19 @@ from geometry.front_strings import strings
 from geometry.front_view import front_view, roll_center
 from geometry.inner_pivot import curvature_center, held_travel, string_rule
 from geometry.joints import joint_swings
-from geometry.layout import SIDES, Layout, LayoutError
+from geometry.layout import SIDES, Layout, LayoutError, Target
 from geometry.layout_file import job_from_text, job_to_text
+from geometry.pivot_zones import pivot_zone
 from geometry.plan_findings import plan_findings
 from geometry.plan_view import plan_of
 from geometry.readouts import READOUTS, format_readout
 from geometry.roll import rolled
+from geometry.sketch import Brief, sketch
 from geometry.solution import Solution, pick, solve
 from geometry.springs import spring_motion
 from geometry.standing import standing
 from geometry.turn_words import turn_words
+from geometry.zones import rack_zone_of
 from tests.fuzz.strange_cars import Batch, batch, car
 
 BATCH = 250
@@ -288,8 +292,47 @@ def _file(layout: Layout, solution: Solution, rng: np.random.Generator) -> None:
         hold(job_from_text(job_to_text(job)) == job, "a file that reads back otherwise")
 
 
+def _zones(layout: Layout, solution: Solution, rng: np.random.Generator) -> None:
+    if rng.random() >= 0.1:
+        return
+    side = SIDES[int(rng.integers(2))]
+    rack = rack_zone_of(solution, side, rack=float(rng.choice([0.0, 20.0])))
+    plain(rack.words(layout.units))
+    hold(bool(rack.zone.is_valid), "a zone whose outline crosses itself")
+    finite([list(place) for place in shapely.get_coordinates(rack.zone)], "a rack zone")
+    for line in (line for lines in rack.contours.values() for line in lines):
+        hold(bool(np.isfinite(line).all()), "a contour through nowhere")
+    held = list(layout.side(side).points)
+    name = held[int(rng.integers(len(held)))]
+    targets = [Target("roll center height", 0.0, 80.0), Target("toe range", None, 2.0)]
+    nail = pivot_zone(layout, side, name, targets, steps=(7, 7), span=solution.span)
+    hold(nail is not None, "a zone that was stopped by nobody")
+    if nail is not None:
+        plain(nail.trouble)
+        finite([list(place) for place in shapely.get_coordinates(nail.zone)], "a pivot zone")
+
+
+def _sketched(layout: Layout, solution: Solution, rng: np.random.Generator) -> None:
+    if rng.random() >= 0.05:
+        return
+    draw = [float(rng.choice([low, high, rng.uniform(low, high), 0.0, 1e6, -1e6],
+                             p=[0.1, 0.1, 0.65, 0.05, 0.05, 0.05]))
+            for low, high in ((1200, 1700), (120, 260), (300, 520), (-0.1, 0.3), (-60, 150),
+                              (-0.1, 0.2), (-180, 180), (150, 400), (180, 350), (-80, 250),
+                              (0.0, 0.002), (10.0, 120.0))]  # fmt: skip
+    try:
+        made = sketch(Brief(layout.left.tire, *draw[:11], span=draw[11], units=layout.units))
+    except LayoutError as reason:
+        plain(reason)
+        hold(str(reason).endswith("."), f"no sentence: {reason}")
+        return
+    plain(" ".join((*made.met, *made.missed)))
+    _readouts(made.layout, solve(made.layout), rng)
+
+
 STEPS: list[Callable[[Layout, Solution, np.random.Generator], None]] = [
     _readouts, _findings, _figures, _drawn, _pivots, _parts, _turned, _drops, _room, _file,
+    _zones, _sketched,
 ]  # fmt: skip
 
 
