@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Callable
 from typing import TYPE_CHECKING
 
-from PySide6.QtCore import QObject
+from PySide6.QtCore import QObject, Qt
 from PySide6.QtGui import QAction, QKeySequence
 from PySide6.QtWidgets import QDialog, QMenu
 
@@ -29,6 +29,7 @@ class LayoutCommands(QObject):
             ("wheel", "&Tire and wheel…", self.wheel, ""),
             ("loads", "&Weights and springs…", self.loads, ""),
             ("no-go", "&No-go shapes…", self.no_go, ""),
+            ("zone", "&Rack zone…", self.zone, "Ctrl+R"),
         ):
             self._add(menu, name, words, act, keys)
         menu.addSeparator()
@@ -49,6 +50,14 @@ class LayoutCommands(QObject):
         menu.addAction(action)
         self.actions[name] = action
         return action
+
+    def zone(self) -> None:
+        """The rack zone in a window of its own beside the floor."""
+        from app.panels.rack_zone import RackZoneDialog
+
+        dialog = RackZoneDialog(self.document, self.window)
+        dialog.setAttribute(Qt.WidgetAttribute.WA_DeleteOnClose)
+        dialog.show()
 
     def _run(self, dialog: QDialog) -> None:
         dialog.exec()

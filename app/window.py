@@ -34,6 +34,7 @@ from app.panels.curves import CurvesPanel
 from app.panels.findings import FindingsPanel
 from app.panels.flow import flow_of
 from app.panels.measure_sheet import MeasureSheetPanel
+from app.panels.rack_zone import FloorZones
 from app.panels.readouts import ReadoutsPanel
 from app.panels.stance_bar import StanceBar
 from app.panels.tool_strip import ToolStrip
@@ -73,6 +74,7 @@ class MainWindow(QMainWindow):
         self.recovery = Recovery(document)
         self.recovery.failed.connect(self._tell_not_kept)
         self.room_watch = RoomWatch(document)
+        self.zones = FloorZones(document, self.floor)
         self.findings_panel.shown.connect(self._point_out)
         self.floor.place_asked.connect(self._type_place)
         self.stance_bar.refused.connect(self.show_refusal)
