@@ -86,7 +86,7 @@ def _height(words: Wording, value: float) -> str:
 
 def _lean(words: Wording, value: float) -> str:
     per = abs(math.degrees(value)) * words.travel_step
-    inch = "an inch" if words.units == "in" else "25 mm"
+    inch = "an inch" if words.units == "in" else "per 25 mm"
     if per < 0.005:
         return f"0° {inch}"
     return f"{per:.2f}° {inch}, leaning {'in' if value > 0.0 else 'out'}"
@@ -124,6 +124,38 @@ _FIGURES = (
 )
 
 
+@dataclass(frozen=True)
+class Described:
+    """One figure of a single car: what it is, its value with its unit, and a sentence on it."""
+
+    key: str
+    heading: str
+    value: str
+    sentence: str
+
+
+def described(solution: Solution) -> tuple[Described, ...]:
+    """The figures that matter of one car alone, in its layout's units."""
+    words = Wording(solution.layout.units)
+    out = []
+    for figure in _FIGURES:
+        value = figure.read(solution)
+        heading = _heading(figure, words, solution)
+        text = "none" if value is None else figure.say(words, value)
+        sentence = f"{heading}: {text}. It is {figure.means}."
+        if value is None:
+            sentence = f"{heading} ({figure.means}): this car has no such figure here."
+        out.append(Described(figure.key, heading, text, sentence))
+    return tuple(out)
+
+
+def _heading(figure: _Figure, words: Wording, solution: Solution) -> str:
+    """What a figure is called, with the travel it is judged over."""
+    if figure.key != "bump steer":
+        return figure.heading
+    return f"{figure.heading} over {words.tape(solution.span)} of bump"
+
+
 def compare(found: Solution, planned: Solution) -> tuple[Compared, ...]:
     """The figures that matter, as found and as planned, in the planned layout's units."""
     words = Wording(planned.layout.units)
@@ -132,8 +164,7 @@ def compare(found: Solution, planned: Solution) -> tuple[Compared, ...]:
 
 def _compared(figure: _Figure, found: Solution, planned: Solution, words: Wording) -> Compared:
     was, now = figure.read(found), figure.read(planned)
-    span = f"over {words.tape(planned.span)} of bump"
-    heading = f"{figure.heading} {span}" if figure.key == "bump steer" else figure.heading
+    heading = _heading(figure, words, planned)
     if was is None or now is None:
         texts = ["none" if v is None else figure.say(words, v) for v in (was, now)]
         return Compared(
@@ -226,7 +257,7 @@ def _moved(words: Wording, before: tuple[float, ...], after: tuple[float, ...]) 
     parts = [
         f"{words.tape(size)} {plus if size > 0.0 else minus}"
         for size, plus, minus in (
-            (up, "up", "down"), (over, "out", "in"), (fore, "forward", "back"),
+            (up, "up", "down"), (over, "outboard", "inboard"), (fore, "forward", "back"),
         )
         if abs(size) >= 0.05
     ]

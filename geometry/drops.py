@@ -61,7 +61,7 @@ def alignment(layout: Layout, wanted: Layout, span: float) -> Alignment:
     after = solve(car, span=span)
     goal = solve(wanted, span=span)
     leaves = tuple(
-        f"{row.heading} stays at {row.now}; it was {row.was}."
+        f"{row.heading} is then {row.now}; it was {row.was}."
         for row in compare(goal, after)
         if row.verdict in ("worse", "different")
     )

@@ -10,7 +10,8 @@ from geometry.layout import Layout
 from geometry.loads import GRAVITY, Transfer, Turn, car_in_turn, jacking
 from geometry.quantities import N_PER_POUND
 from geometry.roll import RolledPose, rolled
-from geometry.solution import solve
+from geometry.solution import Solution, solve
+from geometry.springs import spring_motion
 
 
 @dataclass(frozen=True)
@@ -30,11 +31,33 @@ def cornering(layout: Layout, lateral_g: float) -> CornerPicture | str:
     if center is None:
         return "This car has no roll center at ride height, so its roll can't be worked out."
     track = float(solution.left.ride.half_track[0] + solution.right.ride.half_track[0])
-    answer = car_in_turn(layout.loads, layout.cg_height, center[1], track, lateral_g)
+    answer = car_in_turn(
+        layout.loads, layout.cg_height, center[1], track, lateral_g,
+        front_wheel_rate=front_wheel_rate(solution),
+    )
     if isinstance(answer, str):
         return answer
     # A left turn leans the body to its right: the left side rises, which is positive.
     return CornerPicture(answer, rolled(layout, answer.roll_angle))
+
+
+def front_wheel_rate(solution: Solution) -> float | None:
+    """The front wheel rate, N/mm: as given, or else from the springs and their mounts.
+
+    At ride height, the mean of both sides; None where a rate or a mount is not given.
+    """
+    given = solution.layout.loads.front_wheel_rate
+    if given is not None:
+        return given
+    rates = []
+    for state in (solution.left, solution.right):
+        rate = state.side.spring.rate
+        motion = spring_motion(state.side, state.corner, state.sweep)
+        if rate is None or motion is None:
+            return None
+        rates.append(float(motion.wheel_rate(rate)[motion.travel.size // 2]))
+    mean = 0.5 * (rates[0] + rates[1])
+    return mean if math.isfinite(mean) and mean > 0.0 else None
 
 
 def _force(newton: float, units: str) -> str:

@@ -1,0 +1,1 @@
+"""What goes on paper: customer, lowering, build and set-out sheets, and full-size patterns."""
