@@ -46,9 +46,7 @@ def toe_plot(
     curves = [(words, toe_change(car, side), car.left.sweep.travel) for words, car in cars]
     band = 0.5 * _band(planned)
     reach = _reach([toe_change(car, s) for s in {side, *alike} for _, car in cars], band, units)
-    box = Bounds(_LEADS = (1.0, 2.0, 2.5, 5.0)
-_FINE_LEADS = (1.0, 1.5, 2.0, 2.5, 3.0, 4.0, 5.0, 6.0, 8.0)
-_LEFT, _FOOT, width - 4.0, height - _HEAD)
+    box = Bounds(_LEFT, _FOOT, width - 4.0, height - _HEAD)
 
     def place(travel: float, toe: float) -> tuple[float, float]:
         x = box.left + (travel + span) / (2.0 * span) * box.width
@@ -103,7 +101,7 @@ def _reach(curves: list[Array], band: float, units: UnitName) -> float:
 
 
 def _round_step(size: float, leads: tuple[float, ...] = _LEADS) -> float:
-    """The next small round number times a power of ten."""
+    """The next of some leading figures times a power of ten."""
     power = 10.0 ** math.floor(math.log10(max(size, 1e-9)))
     for lead in leads:
         if size <= lead * power * (1 + 1e-9):
