@@ -38,7 +38,8 @@ LAYOUT = st.builds(
     | st.builds(RelayRod, POINT, POINT, POINT, POINT, st.sampled_from(["left", "right"])),
     title=st.lists(WORDS, min_size=1, max_size=4).map(" ".join),
     units=st.sampled_from(["in", "mm"]),
-    wheelbase=st.none() | SIZE,
+    # A layout file takes no wheelbase below a millimeter, so a sheet gives none.
+    wheelbase=st.none() | SIZE.filter(lambda size: size >= 1.0),
     cg_height=st.none() | SIZE,
 )
 
