@@ -35,6 +35,9 @@ SWING_LIMIT = 1.35
 
 SWING_STEPS = 121
 
+STOP_REACH = 40.0
+"""How near a stop, mm of travel, a pose that was not found at once is looked for by halving."""
+
 MISSED_TRAVEL = 1e-6
 """How far the wheel may be off its travel in a pose that counts, mm: rounding in huge cars."""
 
@@ -374,7 +377,7 @@ class Corner:
         gap_before = self._wheel_height(before, inner)[0] - target
         gap, margin = self._wheel_height(now, inner)
         gap = gap - target
-        for _ in range(30):
+        for _ in range(12):
             if not np.any(np.abs(gap) > 0.05 * TRAVEL_TOLERANCE):
                 break
             slope = (gap - gap_before) / (now - before)
@@ -390,7 +393,38 @@ class Corner:
             gap, margin = self._wheel_height(now, inner)
             gap = gap - target
         found = (np.abs(gap) < 10.0 * TRAVEL_TOLERANCE) & (margin >= 0.0)
-        return now, found & (now > low) & (now < high)
+        found &= (now > low) & (now < high)
+        if np.any(~found & self._near_a_stop(travel)):
+            halved, there = self._swing_by_halves(target, inner)
+            now, found = np.where(found, now, halved), found | there
+        return now, np.asarray(found)
+
+    def _near_a_stop(self, travel: Array) -> np.ndarray:
+        """Where a travel (...) that was not found may still be one the parts can reach."""
+        low, high, swings, lift = self.swing_range
+        inside = (swings > low) & (swings < high)
+        least = np.where(inside, lift, np.inf).min(axis=-1, keepdims=True)
+        most = np.where(inside, lift, -np.inf).max(axis=-1, keepdims=True)
+        return np.asarray((travel > least - STOP_REACH) & (travel < most + STOP_REACH))
+
+    def _swing_by_halves(self, target: Array, inner: Array) -> tuple[Array, np.ndarray]:
+        """Like swing_for, by halving: slow, but sure where the wheel's rise comes to a stand."""
+        low, high, _, _ = self.swing_range
+        shape = np.broadcast_shapes(target.shape, inner.shape[1:])
+        up = target > self.wheel_center[2]
+        below = np.broadcast_to(np.where(up, 0.0, low), shape)
+        above = np.broadcast_to(np.where(up, high, 0.0), shape)
+        for _ in range(48):
+            middle = 0.5 * (below + above)
+            height, margin = self._wheel_height(middle, inner)
+            rising = self._wheel_height(middle + 1e-7, inner)[0] > height
+            good = (margin >= 0.0) & rising
+            # Going up, what can't be reached lies above; going down, below.
+            lower = np.where(up, good & (height < target), ~good | (height < target))
+            below, above = np.where(lower, middle, below), np.where(lower, above, middle)
+        swing = np.where(up, below, above)
+        height, margin = self._wheel_height(swing, inner)
+        return swing, np.asarray((np.abs(height - target) < 1e-7) & (margin >= 0.0))
 
     def poses(self, travel: Array | float, shift: Array | None = None) -> Poses:
         """The corner at each wheel travel.
