@@ -71,14 +71,15 @@ def check_job(job: Job) -> None:
 
 def check(read: Callable[[Any], Job], source: Any, refusals: tuple[type[ValueError], ...]) -> bool:
     """True if ``source`` was read; False if refused. AssertionError if neither, or too slow."""
-    begun = time.monotonic()
+    # The reader's own time: a busy machine must not look like a slow reader.
+    begun = time.process_time()
     try:
         job = read(source)
     except refusals as refusal:
         check_refusal(refusal)
         return False
     finally:
-        took = time.monotonic() - begun
+        took = time.process_time() - begun
         assert took < SLOW_SECONDS, f"{took:.1f} s"
     check_job(job)
     return True
