@@ -24,7 +24,7 @@ class _Job(QRunnable):
     def run(self) -> None:
         try:
             answer, trouble = self._question(self.stop.is_set), ""
-        except Exception:
+        except Exception:  # noqa: BLE001 - whatever it was, the window has to hear of it
             answer, trouble = None, traceback.format_exc()
         try:
             self._owner.came_back.emit(self._number, answer, trouble)

@@ -59,7 +59,11 @@ class ViewCommands(QObject):
         commands.check(f"text {nearest}", True)
 
     def _choice(
-        self, menu: QMenu, name: str, entries: tuple[tuple[str, str, str], ...], act: Callable[..., object]
+        self,
+        menu: QMenu,
+        name: str,
+        entries: tuple[tuple[str, str, str], ...],
+        act: Callable[..., object],
     ) -> None:
         """Entries of which one is marked; ``act`` gets the key of the one chosen."""
         group = QActionGroup(self._window)

@@ -43,7 +43,7 @@ def minimax(slopes: Array, offsets: Array) -> Array | None:
             break
         chosen[drop] = worst
     assert fit is not None
-    return np.array(fit[:2]) / scale
+    return np.asarray(np.array(fit[:2]) / scale)
 
 
 _Row = tuple[float, float, float]

@@ -16,7 +16,7 @@ from geometry import layout as names
 from geometry.finding_checks.wording import Wording
 from geometry.layout import Layout, LayoutError, Point, Rack, Side, Tire, UnitName
 from geometry.solution import Solution, solve
-from geometry.tolerances import camber_gain, tolerance, toe_length
+from geometry.tolerances import camber_gain, toe_length, tolerance
 
 RATIO_STEPS = 13
 LEAST_ARM = 120.0
@@ -94,7 +94,7 @@ def _check(brief: Brief) -> None:
     half = 0.5 * brief.track
     if brief.upper_up - brief.lower_up < 50.0:
         raise LayoutError("The upper ball joint has to stand well above the lower one.")
-    if not 0.0 < brief.lower_up:
+    if not brief.lower_up > 0.0:
         raise LayoutError("The lower ball joint has to be above the floor.")
     lower_over = half - brief.scrub_radius - brief.lower_up * math.tan(brief.kingpin_inclination)
     if brief.frame_half > lower_over - LEAST_ARM:

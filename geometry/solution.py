@@ -9,6 +9,7 @@ from __future__ import annotations
 from collections.abc import Sequence
 from dataclasses import dataclass
 from functools import cached_property
+from typing import Any
 
 import numpy as np
 
@@ -131,12 +132,10 @@ def pair_or_none(values: Array) -> tuple[float, float] | None:
 
 def pick(poses: Poses, index: slice) -> Poses:
     """A part of some poses along their last axis."""
-    return Poses(
-        **{
-            key: None if value is None else value[..., index]
-            for key, value in poses.__dict__.items()
-        }
-    )
+    parts: dict[str, Any] = {
+        key: None if value is None else value[..., index] for key, value in poses.__dict__.items()
+    }
+    return Poses(**parts)
 
 
 def _pick_view(view: FrontView, index: slice) -> FrontView:

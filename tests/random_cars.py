@@ -32,7 +32,8 @@ def random_side(rng: np.random.Generator, kind: str = "A-arm") -> Side:
     """A side whose parts meet over a usual travel; every point has its own fore."""
 
     def near(over: float, up: float, fore: float, spread: float = 25.0) -> Point:
-        return Point(*(float(v) for v in np.array([over, up, fore]) + rng.uniform(-1, 1, 3) * spread))
+        place = np.array([over, up, fore]) + rng.uniform(-1, 1, 3) * spread
+        return Point(*map(float, place))
 
     rear = rng.random() < 0.6
     arm_fore = -125.0 if rear else 125.0

@@ -25,11 +25,13 @@ from PySide6.QtWidgets import (
 )
 
 from app.document import Document
-from geometry.layout import Layout, NoGo
+from geometry.layout import Layout, NoGo, SideName
 from geometry.lengths import format_exact, parse_length
 from geometry.outlines import OutlineError, read_outlines
 
-_SIDES = (("both sides, mirrored", None), ("left side", "left"), ("right side", "right"))
+_SIDES: tuple[tuple[str, SideName | None], ...] = (
+    ("both sides, mirrored", None), ("left side", "left"), ("right side", "right"),
+)
 _VIEWS = (("front", "from the front (over, up)"), ("above", "from above (over, fore)"))
 
 
@@ -98,7 +100,10 @@ class NoGoDialog(QDialog):
         self.table.horizontalHeader().setSectionResizeMode(QHeaderView.ResizeMode.Stretch)
         column.addWidget(self.table)
         row = QHBoxLayout()
-        for words, act in (("Add &corner", self._add_corner), ("Remove c&orner", self._drop_corner)):
+        for words, act in (
+            ("Add &corner", self._add_corner),
+            ("Remove c&orner", self._drop_corner),
+        ):
             button = QPushButton(words)
             button.clicked.connect(act)
             row.addWidget(button)

@@ -1,4 +1,4 @@
-"""The rack zone: where the inner tie-rod pivot may sit, live on the floor and large with contours."""
+"""The rack zone: where the inner tie-rod pivot may sit, on the floor and large with contours."""
 
 from __future__ import annotations
 
@@ -167,7 +167,8 @@ class RackZoneDialog(QDialog):
                 self._add(pg.PlotCurveItem(line[:, 0] / scale, line[:, 1] / scale, pen=pen))
             if lines:
                 mark = "tolerance " if exact else ""
-                legend.append(f'<span style="color:{color}">{"━" if exact else "┅"} {mark}{toe}</span>')
+                dash = "━" if exact else "┅"
+                legend.append(f'<span style="color:{color}">{dash} {mark}{toe}</span>')
         self.legend.setText("Toe change over the travel: " + "&nbsp; ".join(legend))
         self._mark(zone.present, "o", theme.INK, "as it stands")
         if zone.best is not None:

@@ -118,7 +118,9 @@ class StanceDialog(QDialog):
         solutions += [way.solution for way in ways]
         for place, solution in enumerate(solutions, 1):
             for row, key in enumerate(SHOWN):
-                self.table.item(row, place).setText(self._figure(BY_KEY[key], solution))
+                item = self.table.item(row, place)
+                assert item is not None
+                item.setText(self._figure(BY_KEY[key], solution))
         reasons = [f"{way.label.capitalize()}: {way.reason}" for way in ways if way.reason]
         self.words.setText(" ".join([self._alignment_words(stance), *reasons]).strip())
 

@@ -35,11 +35,11 @@ class WheelDialog(QDialog):
         tire = self._layout.side(self._side).tire
         self._tire = tire
         column = QVBoxLayout(self)
-        self.size = QLineEdit(tire.size)
-        self.size.setPlaceholderText("205/55R16, 31x10.5R15 or 6.00-16")
-        self.size.setAccessibleName("Tire size")
+        self.size_text = QLineEdit(tire.size)
+        self.size_text.setPlaceholderText("205/55R16, 31x10.5R15 or 6.00-16")
+        self.size_text.setAccessibleName("Tire size")
         self.form = Form(self._layout.units)
-        self.form.add_widget("Tire &size", self.size)
+        self.form.add_widget("Tire &size", self.size_text)
         for key, label, value in (
             ("radius", "Loaded radius", tire.radius),
             ("width", "Tire width", tire.width),
@@ -62,7 +62,7 @@ class WheelDialog(QDialog):
         buttons.accepted.connect(self._accept)
         buttons.rejected.connect(self.reject)
         column.addWidget(buttons)
-        self.size.textChanged.connect(self._size_typed)
+        self.size_text.textChanged.connect(self._size_typed)
         self.form.changed.connect(self.refresh)
         self.resize(480, 420)
         self.refresh()
@@ -90,7 +90,7 @@ class WheelDialog(QDialog):
         backspace = values.pop("backspace")
         assert backspace is not None
         known = {key: value for key, value in values.items() if value is not None}
-        tire: Tire = replace(self._tire, **known, size=self.size.text().strip())
+        tire: Tire = replace(self._tire, **known, size=self.size_text.text().strip())
         if self.form.fields["backspace"].field.isModified() or "rim_width" in known:
             tire = replace(tire, offset=offset_for(backspace, tire.rim_width))
         return wheel_changed(self._layout, self._side, tire)

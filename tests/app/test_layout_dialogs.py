@@ -110,7 +110,7 @@ def test_a_tire_size_fills_the_wheel_and_moves_the_car(qtbot, document):
     before = document.layout
     dialog = WheelDialog(document)
     qtbot.addWidget(dialog)
-    type_into(qtbot, dialog.size, "205/55R16")
+    type_into(qtbot, dialog.size_text, "205/55R16")
     dialog.ok.click()
     tire = document.layout.left.tire
     assert tire.size == "205/55R16"

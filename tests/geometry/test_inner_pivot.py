@@ -96,7 +96,9 @@ def test_the_example_s_tie_rod_mismatch(kind: str, mismatch: float) -> None:
 def test_curvature_center_is_bobillier_s_on_plane_cars(seed: int) -> None:
     rng = np.random.default_rng(seed)
     side = replace(random_side(rng), static_toe=0.0)
-    flat = {n: p._replace(fore=-125.0 if n.startswith("tie") else 0.0) for n, p in side.points.items()}
+    flat = {
+        n: p._replace(fore=-125.0 if n.startswith("tie") else 0.0) for n, p in side.points.items()
+    }
     side = replace(side, points=flat)
     assert curvature_center(Corner.of(side)) == pytest.approx(bobillier(side), rel=1e-7, abs=1e-5)
 
