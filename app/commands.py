@@ -18,6 +18,7 @@ from app.layout_commands import LayoutCommands
 from app.panels.tell_dialog import TellDialog, paragraphs, table
 from app.recovery import left_behind
 from app.resources import __version__, data_path, sample_paths
+from app.sheet_commands import SheetCommands
 from app.view_commands import ViewCommands
 from geometry.curves import curves_to_csv
 from geometry.drawing import DrawingError
@@ -43,6 +44,7 @@ class Commands(QObject):
         self._edit_menu()
         self._view_menu()
         self._layout_menu()
+        self.sheets = SheetCommands(self)
         self._help_menu()
         self.document.edited.connect(self.refresh)
         self.document.selected.connect(self.refresh)

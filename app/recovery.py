@@ -170,6 +170,7 @@ class Recovery(QObject):
         self._writing: Future[str] | None = None
         self._kept: tuple[Job, Path | None] | None = None
         self._told = False
+        self._ended = False
         self._timer = QTimer(self)
         self._timer.setSingleShot(True)
         self._timer.setInterval(wait_ms)
@@ -245,6 +246,9 @@ class Recovery(QObject):
     def end(self) -> None:
         """The window closes and its work is saved or let go: leave nothing behind."""
         self._timer.stop()
+        if self._ended:
+            return
+        self._ended = True
         self._document.edited.disconnect(self.look)
         self._document.solved.disconnect(self.look)
         self._worker.shutdown(wait=True)

@@ -1,0 +1,70 @@
+"""The Sheets menu: what is printed for the customer and the shop, seen first, then on paper."""
+
+from __future__ import annotations
+
+import datetime
+from collections.abc import Callable
+from functools import partial
+from importlib import import_module
+from typing import TYPE_CHECKING
+
+from PySide6.QtCore import QObject
+from PySide6.QtWidgets import QMessageBox
+
+from app import files
+from geometry.pages import Pages
+from geometry.sheets.options import SheetOptions
+
+if TYPE_CHECKING:
+    from app.commands import Commands
+
+SHEETS: tuple[tuple[str, str, str, str], ...] = (
+    ("customer", "&Customer sheet", "geometry.sheets.customer", "customer_sheet"),
+    ("lowering", "Three ways to &lower", "geometry.sheets.ways", "lowering_sheet"),
+)
+"""Name, words, and where the sheet is made; imported when first used."""
+
+
+class SheetCommands(QObject):
+    """Adds a preview and a PDF command for every sheet."""
+
+    def __init__(self, commands: Commands) -> None:
+        super().__init__(commands)
+        self._window, self._document = commands.window, commands.document
+        menu = self._window.menuBar().addMenu("&Sheets")
+        for name, words, _, _ in SHEETS:
+            commands.add(menu, f"sheet {name}", f"{words}…", partial(self.preview, name),
+                         "Ctrl+Shift+P" if name == "customer" else None, icon="sheet")
+        menu.addSeparator()
+        save = menu.addMenu("Save as &PDF")
+        for name, words, _, _ in SHEETS:
+            commands.add(save, f"pdf {name}", f"{words}…", partial(self.save_pdf, name))
+
+    def pages(self, name: str) -> Pages:
+        """A sheet of the document as it stands, dated today."""
+        _, _, module, function = next(sheet for sheet in SHEETS if sheet[0] == name)
+        make: Callable[..., Pages] = getattr(import_module(module), function)
+        options = SheetOptions(date=datetime.date.today(), span=self._document.span)
+        return make(self._document.job, options)
+
+    def preview(self, name: str) -> None:
+        """Show the sheet's pages; they are printed from there."""
+        from app.sheets.printing import preview_pages
+
+        try:
+            preview_pages(self.pages(name), self._document.layout.title, self._window)
+        except (OSError, ValueError) as reason:
+            QMessageBox.warning(self._window, "Bobline", str(reason))
+
+    def save_pdf(self, name: str) -> None:
+        """Write the sheet as a PDF file at true size."""
+        from app.sheets.pdf import write_pdf
+
+        proposed = f"{self._document.layout.title} {name}"
+        path = files.ask_export(self._window, "Save as PDF", proposed, "PDF (*.pdf)")
+        if path is None:
+            return
+        try:
+            write_pdf(self.pages(name), path)
+        except (OSError, ValueError) as reason:
+            QMessageBox.warning(self._window, "Bobline", f"“{path.name}” was not written: {reason}")
