@@ -6,6 +6,7 @@ widest of the families asked for, so text set in another of them never runs long
 
 from __future__ import annotations
 
+import re
 import unicodedata
 from typing import Literal
 
@@ -39,6 +40,7 @@ _BOLD = """
     716 593 716 678 435 716 712 343 343 665 343 1042 712 687 716 716 493 595 478 712 652 924
     645 652 582 712 365 712 838"""
 _OTHERS = {
+    "\N{NO-BREAK SPACE}": 318,
     "\N{DEGREE SIGN}": 500,
     "\N{VULGAR FRACTION ONE HALF}": 1035,
     "\N{VULGAR FRACTION ONE QUARTER}": 1035,
@@ -61,6 +63,7 @@ def _table(advances: str) -> dict[str, float]:
 
 _ADVANCES = {False: _table(_REGULAR), True: _table(_BOLD)}
 _UNLISTED = 1.04
+_BREAKS = re.compile("[ \t\r\f\v]+")
 _MONO = 0.602
 
 
@@ -87,12 +90,13 @@ def wrapped(
 ) -> list[str]:
     """The text broken between words into lines of at most ``width`` mm.
 
-    Line ends in the text are kept, an empty line too. A word longer than a line is cut.
+    Line ends in the text are kept, an empty line too. A word longer than a line is cut; a
+    no-break space keeps two words together.
     """
     lines: list[str] = []
     for paragraph in text.splitlines() or [""]:
         line = ""
-        for word in paragraph.split():
+        for word in _BREAKS.split(paragraph.strip()):
             longer = f"{line} {word}" if line else word
             if text_width(longer, height, bold, family) <= width:
                 line = longer

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Sequence
 from dataclasses import dataclass, field
 from typing import Literal
@@ -26,6 +27,8 @@ from geometry.sheets.options import Heading
 _FOOT = 8.0
 _RISE = 1.25
 """From the top of a line's room down to its baseline, over its capitals' height."""
+_READING = re.compile(r"\d+ \d+/\d+(?: (?:in|ft)\b)?|\d(?: (?:in|mm|ft|m|g)\b)")
+_HARD = "\N{NO-BREAK SPACE}"
 _PAD = 3.0
 """Clear room between columns of a table."""
 
@@ -161,7 +164,7 @@ class Flow:
     ) -> None:
         """A text broken into lines, with a mark before its first one if there is one."""
         hang = indent + (text_width("•", height) + height if mark else 0.0)
-        lines = wrapped(text, self.width - hang, height, bold)
+        lines = broken(text, self.width - hang, height, bold)
         self.keep(min(len(lines), 2) * LINE_SPACING * height)
         for number, words in enumerate(lines):
             self.keep(LINE_SPACING * height)
@@ -187,7 +190,7 @@ class Flow:
         width = 0.5 * self.width - _PAD
         for left in range(half):
             pair = [texts[left], *texts[left + half : left + half + 1]]
-            lines = [wrapped(text, width - hang, height) for text in pair]
+            lines = [broken(text, width - hang, height) for text in pair]
             tall = max(map(len, lines)) * LINE_SPACING * height
             self.keep(tall)
             top = self.y
@@ -203,7 +206,7 @@ class Flow:
     def box_of(self, title: str, texts: Sequence[str], height: float = SMALL) -> None:
         """A tinted box of short paragraphs that stays in one piece."""
         inner = self.width - 6.0
-        lines = [wrapped(text, inner, height) for text in texts]
+        lines = [broken(text, inner, height) for text in texts]
         step = LINE_SPACING * height
         count = sum(map(len, lines))
         tall = 4.0 + LINE_SPACING * BODY + count * step + 1.0 * (len(lines) - 1)
@@ -279,9 +282,9 @@ class Flow:
 
     # --- the end ------------------------------------------------------------------------
 
-    def finish(self) -> Pages:
-        """The pages, each with its number at the foot."""
-        count = len(self._sheets)
+    def finish(self, more: int = 0) -> Pages:
+        """The pages, each with its number at the foot; ``more`` pages follow them."""
+        count = len(self._sheets) + more
         pages = []
         for number, sheet in enumerate(self._sheets, 1):
             base = self.box.bottom - _FOOT + 1.0
@@ -306,9 +309,15 @@ class Flow:
 def _broken(row: Row, widths: Sequence[float], height: float) -> list[list[str]]:
     cells = [cell if isinstance(cell, Cell) else Cell(cell) for cell in row]
     return [
-        wrapped(cell.text, width - _PAD, height, cell.bold)
+        broken(cell.text, width - _PAD, height, cell.bold)
         for cell, width in zip(cells, widths, strict=True)
     ]
+
+
+def broken(text: str, width: float, height: float, bold: bool = False) -> list[str]:
+    """The text in lines, a tape reading ("6 7/16 in") never torn between two."""
+    bound = _READING.sub(lambda found: found[0].replace(" ", _HARD), text)
+    return [line.replace(_HARD, " ") for line in wrapped(bound, width, height, bold)]
 
 
 def _tall(lines: Sequence[Sequence[str]], height: float) -> float:
