@@ -21,6 +21,9 @@ if TYPE_CHECKING:
 SHEETS: tuple[tuple[str, str, str, str], ...] = (
     ("customer", "&Customer sheet", "geometry.sheets.customer", "customer_sheet"),
     ("lowering", "Three ways to &lower", "geometry.sheets.ways", "lowering_sheet"),
+    ("build", "&Build sheet", "geometry.sheets.build", "build_sheet"),
+    ("set-out", "Set-&out list", "geometry.sheets.set_out_sheet", "set_out_sheet"),
+    ("pattern", "&Full-size pattern, tiled", "geometry.sheets.pattern_sheet", "pattern_sheet"),
 )
 """Name, words, and where the sheet is made; imported when first used."""
 
@@ -39,6 +42,10 @@ class SheetCommands(QObject):
         save = menu.addMenu("Save as &PDF")
         for name, words, _, _ in SHEETS:
             commands.add(save, f"pdf {name}", f"{words}…", partial(self.save_pdf, name))
+        cut = menu.addMenu("Full-size pattern as &drawing")
+        commands.add(cut, "pattern dxf", "&DXF…", partial(self.save_drawing, "dxf"))
+        commands.add(cut, "pattern svg", "&SVG…", partial(self.save_drawing, "svg"))
+        commands.add(menu, "set-out csv", "Set-out list as &CSV…", self.save_set_out)
 
     def pages(self, name: str) -> Pages:
         """A sheet of the document as it stands, dated today."""
@@ -46,6 +53,40 @@ class SheetCommands(QObject):
         make: Callable[..., Pages] = getattr(import_module(module), function)
         options = SheetOptions(date=datetime.date.today(), span=self._document.span)
         return make(self._document.job, options)
+
+    def save_drawing(self, kind: str) -> None:
+        """The front view at true size for a cutting table or a plotter."""
+        from geometry.dxf import write_dxf
+        from geometry.sheets.patterns import pattern
+        from geometry.svg import write_svg
+
+        name = f"{self._document.layout.title} pattern"
+        path = files.ask_export(self._window, "Save full-size pattern", name,
+                                f"{kind.upper()} (*.{kind})")
+        if path is None:
+            return
+        try:
+            drawing = pattern(self._document.solution, "front view")
+            if kind == "dxf":
+                write_dxf(drawing, path, self._document.units)
+            else:
+                write_svg(drawing, path)
+        except (OSError, ValueError) as reason:
+            QMessageBox.warning(self._window, "Bobline", f"“{path.name}” was not written: {reason}")
+
+    def save_set_out(self) -> None:
+        """The set-out list as a table for a spreadsheet."""
+        from geometry.sheets.set_out import set_out_csv
+        from geometry.text_file import write_text_file
+
+        name = f"{self._document.layout.title} set-out"
+        path = files.ask_export(self._window, "Save set-out list", name, "Set-out list (*.csv)")
+        if path is None:
+            return
+        try:
+            write_text_file(path, set_out_csv(self._document.solution))
+        except OSError as reason:
+            QMessageBox.warning(self._window, "Bobline", f"“{path.name}” was not written: {reason}")
 
     def preview(self, name: str) -> None:
         """Show the sheet's pages; they are printed from there."""

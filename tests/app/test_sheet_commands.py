@@ -33,3 +33,16 @@ def test_a_sheet_is_saved_as_pdf(window, tmp_path, monkeypatch):
     window.commands.actions["pdf customer"].trigger()
     assert target.read_bytes().startswith(b"%PDF-")
     assert target.stat().st_size > 5_000
+
+
+@pytest.mark.parametrize(
+    ("action", "name", "start"),
+    [("pattern dxf", "front.dxf", "  0\nSECTION"), ("pattern svg", "front.svg", "<"),
+     ("set-out csv", "list.csv", "")],
+)
+def test_pattern_and_list_are_saved(window, tmp_path, monkeypatch, action, name, start):
+    target = tmp_path / name
+    monkeypatch.setattr(QFileDialog, "getSaveFileName", lambda *a, **k: (str(target), ""))
+    window.commands.actions[action].trigger()
+    text = target.read_text(encoding="utf-8")
+    assert text.startswith(start) and len(text) > 300
