@@ -98,14 +98,47 @@ def front_dimensions(
     frame = Bounds(
         area.left - _EDGE, area.bottom - _UNDER, area.right + _EDGE, area.top + _ABOVE
     )
-    return Drawing(tuple(items), frame)
+    return Drawing(tuple(items), _with_words(frame, items))
+
+
+def _with_words(frame: Bounds, items: Sequence[Item]) -> Bounds:
+    """A frame grown to hold every word in it."""
+    for item in items:
+        if isinstance(item, Text):
+            frame = frame.joined(item.bounds.padded(0.5))
+    return frame
 
 
 def _letters(places: dict[str, Place]) -> Iterator[Item]:
-    """A letter on a small white disc at every nail, ringed nails beneath."""
-    for letter, (x, y) in places.items():
-        yield Circle((x, y), 1.75, Style(INK, 0.18, fill="#FFFFFF", layer="nails"))
-        yield Text((x, y), letter, 1.7, "center", "middle", bold=True, style=ink(layer="nails"))
+    """A letter on a small white disc at every nail; nails too near to tell apart share one."""
+    for at, letters in _together(places):
+        words = Text(at, " ".join(letters), 1.7, "center", "middle", bold=True,
+                     style=ink(layer="nails"))
+        white = Style(INK, 0.18, fill="#FFFFFF", layer="nails")
+        if len(letters) == 1:
+            yield Circle(at, 1.75, white)
+        else:
+            yield Polygon(words.bounds.padded(0.5).corners, style=white)
+        yield words
+
+
+def _together(places: dict[str, Place]) -> list[tuple[Place, list[str]]]:
+    """Letters by the place they stand at, those whose words would touch in one group."""
+    groups = [(place, [letter]) for letter, place in places.items()]
+    while True:
+        boxes = [
+            Text(at, " ".join(letters), 1.7, "center", "middle", bold=True).bounds.padded(0.1)
+            for at, letters in groups
+        ]
+        pair = next(
+            ((i, k) for k in range(len(boxes)) for i in range(k) if _overlap(boxes[i], boxes[k])),
+            None,
+        )
+        if pair is None:
+            return groups
+        first, second = pair
+        groups[first][1].extend(groups[second][1])
+        del groups[second]
 
 
 _PAIRS = (
@@ -181,28 +214,11 @@ def above_dimensions(
     middle = area.center[0]
     items += beside([o for o in ordinates if o.at[0] < middle], area.left - 10.0, True)
     items += beside([o for o in ordinates if o.at[0] >= middle], area.right + 10.0, False)
-    items += _plan_letters(places)
+    items += _letters(places)
     at = (area.left - _EDGE, area.bottom - 4.0)
     note = Text(at, "front of the car ↓", SMALL, style=ink(SOFT))
     frame = Bounds(area.left - _EDGE, area.bottom - 6.0, area.right + _EDGE, area.top + 4.0)
-    return Drawing((*items, note), frame)
-
-
-def _plan_letters(places: dict[str, Place]) -> Iterator[Item]:
-    """Letters on discs; nails that stand over one another share a disc."""
-    groups: list[tuple[Place, list[str]]] = []
-    for letter, place in places.items():
-        near = next((g for g in groups if math.dist(g[0], place) < 3.6), None)
-        if near is None:
-            groups.append((place, [letter]))
-        else:
-            near[1].append(letter)
-    for (x, y), letters in groups:
-        words = Text((x, y), " ".join(letters), 1.7, "center", "middle", bold=True,
-                     style=ink(layer="nails"))
-        plate = words.bounds.padded(0.5)
-        yield Polygon(plate.corners, style=Style(INK, 0.18, fill="#FFFFFF", layer="nails"))
-        yield words
+    return Drawing((*items, note), _with_words(frame, items))
 
 
 def _tire(

@@ -2,15 +2,13 @@
 
 from __future__ import annotations
 
-import math
-
 from geometry.bounds import Bounds
 from geometry.drawing import Circle, Drawing, Item, Style, Text
 from geometry.finding_checks.wording import Wording
 from geometry.floor_words import capital
 from geometry.layout import SIDES, Job
 from geometry.pages import Pages
-from geometry.sheets.car_art import Look, frame_for, front_art, scale_for
+from geometry.sheets.car_art import Look, frame_for, front_art, holds, scale_for
 from geometry.sheets.cautions import COMPUTED, FOR_FLOOR
 from geometry.sheets.flow import Cell, Column, Flow
 from geometry.sheets.look import INK, SMALL, SOFT, ink
@@ -86,12 +84,15 @@ def _picture(
     """The front view with every nail's letter beside it."""
     art = front_art(solution, frame, scale, look=Look(springs=False, grooves=False))
     items: list[Item] = list(art.items)
-    taken: list[tuple[float, float]] = []
+    taken: list[Bounds] = [item.bounds for item in items if isinstance(item, Text)]
+    paper = art.shown(-2.0)
     for nail in nails:
         for side in SIDES if nail.side is None else (nail.side,):
             x, y = sign_of(side) * nail.place.over / scale, nail.place.up / scale
-            at = _free(x, y, sign_of(side), taken)
-            taken.append(at)
+            at = _free(x, y, sign_of(side), taken, paper)
+            if at is None:
+                continue
+            taken.append(Bounds(*at, *at).padded(1.6))
             items.append(Circle(at, 1.5, Style(INK, 0.12, fill="#FFFFFF", layer="labels")))
             items.append(Text(at, nail.letter, 1.5, "center", "middle", bold=True,
                               style=ink(layer="labels")))
@@ -99,17 +100,22 @@ def _picture(
 
 
 def _free(
-    x: float, y: float, out: float, taken: list[tuple[float, float]]
-) -> tuple[float, float]:
-    """A place for a letter near a nail, clear of the other letters."""
+    x: float, y: float, out: float, taken: list[Bounds], paper: Bounds
+) -> tuple[float, float] | None:
+    """A place for a letter near a nail, clear of all other words; None if there is none."""
     spots = [(0.0, 2.8), (0.0, -2.8), (-2.8, 0.0), (2.8, 0.0), (2.4, 2.4), (-2.4, 2.4),
              (2.4, -2.4), (-2.4, -2.4)]
-    rings = [(k * dx, k * dy) for k in (1.0, 1.8, 2.6, 3.6) for dx, dy in spots]
-    for dx, dy in rings:
-        at = (x + out * dx, y + dy)
-        if all(math.dist(at, other) > 3.2 for other in taken):
-            return at
-    return x, y
+    for reach in (1.0, 1.8, 2.6, 3.6, 5.0):
+        for dx, dy in spots:
+            at = (x + out * reach * dx, y + reach * dy)
+            box = Bounds(*at, *at).padded(1.6)
+            if holds(paper, at) and not any(_overlap(box, other) for other in taken):
+                return at
+    return None
+
+
+def _overlap(a: Bounds, b: Bounds) -> bool:
+    return a.left < b.right and b.left < a.right and a.bottom < b.top and b.bottom < a.top
 
 
 def _nails(flow: Flow, job: Job, nails: tuple[Nail, ...]) -> None:
