@@ -17,8 +17,9 @@ from geometry.sheets.options import SheetOptions
 
 if TYPE_CHECKING:
     from app.commands import Commands
+    from geometry.sheets.catalog import SheetKind
 
-SHEETS: tuple[tuple[str, str, str, str], ...] = (
+SHEETS: tuple[tuple[SheetKind, str, str, str], ...] = (
     ("customer", "&Customer sheet", "geometry.sheets.customer", "customer_sheet"),
     ("lowering", "Three ways to &lower", "geometry.sheets.ways", "lowering_sheet"),
     ("build", "&Build sheet", "geometry.sheets.build", "build_sheet"),
@@ -58,6 +59,7 @@ class SheetCommands(QObject):
         """The front view at true size for a cutting table or a plotter."""
         from geometry.dxf import write_dxf
         from geometry.sheets.patterns import pattern
+        from geometry.solution import solve
         from geometry.svg import write_svg
 
         name = f"{self._document.layout.title} pattern"
@@ -66,7 +68,8 @@ class SheetCommands(QObject):
         if path is None:
             return
         try:
-            drawing = pattern(self._document.solution, "front view")
+            # At ride height, whatever pose the floor shows.
+            drawing = pattern(solve(self._document.layout), "front view")
             if kind == "dxf":
                 write_dxf(drawing, path, self._document.units)
             else:
@@ -88,14 +91,11 @@ class SheetCommands(QObject):
         except OSError as reason:
             QMessageBox.warning(self._window, "Bobline", f"“{path.name}” was not written: {reason}")
 
-    def preview(self, name: str) -> None:
-        """Show the sheet's pages; they are printed from there."""
-        from app.sheets.printing import preview_pages
+    def preview(self, kind: SheetKind) -> None:
+        """Show the sheet with its choices; it is printed and saved from there."""
+        from app.sheets.dialog import open_sheets
 
-        try:
-            preview_pages(self.pages(name), self._document.layout.title, self._window)
-        except (OSError, ValueError) as reason:
-            QMessageBox.warning(self._window, "Bobline", str(reason))
+        open_sheets(self._document, self._window, kind)
 
     def save_pdf(self, name: str) -> None:
         """Write the sheet as a PDF file at true size."""

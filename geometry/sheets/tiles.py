@@ -43,6 +43,8 @@ LARGEST_SHEET = 5000.0
 """mm; a PDF page may be 200 in (5080 mm) long (ISO 32000-1, from memory)."""
 
 _CUT = Style("#6F7479", 0.13, (3.0, 2.0), layer="joints")
+_BAR = Style(INK, 0.13, layer="check bar")
+"""A hairline, so that it measures the same from ink to ink as from middle to middle."""
 _CROSS = Style(INK, 0.2, layer="joints")
 
 
@@ -185,8 +187,7 @@ def _guide(
     """What to do with the tiles, the bar to measure, and the map."""
     length, words = bar_for(units)
     flow.title("Measure this first", 20.0)
-    bar = check_bar((0.0, 0.0), length, f"This bar must measure exactly {words}.", BODY,
-                    Style(INK, 0.3, layer="check bar"))
+    bar = check_bar((0.0, 0.0), length, f"This bar must measure exactly {words}.", BODY, _BAR)
     box = Bounds(-2.0, -3.0, length + 2.0, 7.0)
     flow.picture(Drawing(bar.items, box), "left")
     flow.paragraph(
@@ -287,7 +288,7 @@ def _strip(
     length, words = (50.8, "2 in") if units == "in" else (50.0, "50 mm")
     base = box.bottom + 1.5
     start = (box.center[0] - 0.5 * length, base + 0.5)
-    bar = check_bar(start, length, f"exactly {words}", SMALL, Style(INK, 0.25, layer="check bar"))
+    bar = check_bar(start, length, f"exactly {words}", SMALL, _BAR)
     room = start[0] - box.left - 14.0
     return group(
         Text((box.left, base), name, 4.0, bold=True, style=ink()),
@@ -318,7 +319,7 @@ def one_sheet(
     page = page.with_placed(drawing, at)
     bar = check_bar((box.left, box.bottom + 3.0), length,
                     f"This bar must measure exactly {words}.", BODY,
-                    Style(INK, 0.3, layer="check bar"))
+                    _BAR)
     room = box.width - length - 6.0
     number = Text((box.right, box.bottom + 3.0), "Page 1 of 1", BODY, "right", style=ink(SOFT))
     title = Text((box.right, box.bottom + 9.0), shortened(heading.title, room, BODY), BODY,
