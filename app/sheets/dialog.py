@@ -106,28 +106,34 @@ class SheetsDialog(QDialog):
             (key, PATTERNS[key]) for key in kinds_for(self._job.planned)
         ])
         self.side = self._combo("Si&de", [(side, f"{side} side") for side in SIDES])
-        self.tile = QCheckBox("&Tile over this paper; else one big sheet")
+        self.tile = QCheckBox("&Tile over this paper")
         self.tile.setChecked(True)
+        self.tile.setToolTip("Without this, all of it goes on one sheet for a plotter.")
         self._form.addRow(self.tile)
         start = SheetOptions().drop_for(self._units)
         self.drop = QuantityField("length", self._units, start, "Drop", blank=False, check=_within)
-        self._row(f"Dro&p, {self._units} (a raise is negative)", self.drop, self.drop.field)
-        self.found = QCheckBox("Compare with the car as &found")
+        self.drop.setToolTip("How far the body comes down; a raise is negative.")
+        self._row(f"Dro&p, {self._units}", self.drop, self.drop.field)
+        self.found = QCheckBox("Compare with as &found")
         self.found.setChecked(True)
         self._form.addRow(self.found)
         self._paperwork()
         column.addStretch(1)
-        column.addLayout(self._buttons())
         scroll = QScrollArea()
         scroll.setWidgetResizable(True)
         scroll.setWidget(inside)
-        scroll.setFixedWidth(330)
+        left = QWidget()
+        rows = QVBoxLayout(left)
+        rows.setContentsMargins(0, 0, 0, 0)
+        rows.addWidget(scroll, 1)
+        rows.addLayout(self._buttons())
+        left.setFixedWidth(max(300, 44 * self.fontMetrics().averageCharWidth()))
         for box in (self.sheet, self.paper, self.pattern, self.side):
             box.currentIndexChanged.connect(self._changed)
         for check in (self.tile, self.found):
             check.toggled.connect(self._changed)
         self.drop.changed.connect(self._changed)
-        return scroll
+        return left
 
     def _paperwork(self) -> None:
         """Shop, customer, date and notes, as the job card has them to begin with."""

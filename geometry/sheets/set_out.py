@@ -237,6 +237,8 @@ def _best_places(
         place = state.pivots.place(kind)
         if place is None or math.hypot(*place) > NEAR:
             continue
+        if kind == "string rule" and state.side.is_strut:
+            means = means.replace("both inner pivots", "lower inner pivot and strut top")
         says = f"For the inner tie-rod pivot ({means}): {place_words(words, *place)}."
         out.append(Check(title, side, *place, says))
     return out

@@ -14,12 +14,14 @@ from geometry.sheets.flow import Cell, Column, Flow
 from geometry.sheets.look import INK, SMALL, SOFT, ink
 from geometry.sheets.nails import Nail, nails_of, readings
 from geometry.sheets.options import Heading, SheetOptions, notes_of
-from geometry.sheets.set_out import NEAR, Check, checks, sides_of
+from geometry.sheets.set_out import Check, checks, sides_of
 from geometry.solution import Solution, solve
 from geometry.standing import sign_of
 
 KIND = "Set-out list"
-_PICTURE = 84.0
+_PICTURE = 72.0
+_WIDER = 1.7
+"""How much wider than the car a picture may become to show an instant center."""
 
 
 def set_out_sheet(job: Job, options: SheetOptions | None = None) -> Pages:
@@ -62,17 +64,17 @@ def _begin(words: Wording, frame: Bounds) -> str:
     return (
         f"Snap a floor line and a centerline square to it: {three} along one and {four} along "
         f"the other must be {five} apart. Measure over from the centerline and up from the "
-        f"floor line, each nail from the lines and never from another nail. The picture takes "
-        f"about {wide} by {high}."
+        f"floor line, each nail from the lines and never from another nail. What is drawn "
+        f"here takes about {wide} by {high}."
     )
 
 
 def _frame(solution: Solution) -> Bounds:
-    """The whole car, and its instant centers where they are within reach."""
-    frame = frame_for([solution], 50.0)
+    """The whole car, and its instant centers where that leaves the car large enough to read."""
+    car = frame = frame_for([solution], 50.0)
     for side in SIDES:
         over, up, weight = (float(v) for v in solution.sides[side].ride_view.instant_center[:, 0])
-        if weight == 1.0 and abs(over) < 0.5 * NEAR and abs(up) < 0.25 * NEAR:
+        if weight == 1.0 and abs(over) < _WIDER * car.right and abs(up) < _WIDER * car.right:
             out = max(frame.right, abs(over) + 60.0)
             frame = Bounds(-out, min(frame.bottom, up - 60.0), out, max(frame.top, up + 120.0))
     return frame
