@@ -76,6 +76,8 @@ class Canvas(QGraphicsView):
         self.setCacheMode(QGraphicsView.CacheModeFlag.CacheBackground)
         self.setOptimizationFlag(QGraphicsView.OptimizationFlag.DontSavePainterState)
         self.viewport().setMouseTracking(True)
+        # The concrete covers it all, so that nothing needs to be painted beneath.
+        self.viewport().setAttribute(Qt.WidgetAttribute.WA_OpaquePaintEvent)
 
     # --- place and zoom -------------------------------------------------------------
 

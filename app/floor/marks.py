@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import numpy as np
 from PySide6.QtCore import QLineF, QPointF, QRectF, Qt
 from PySide6.QtGui import QBrush, QColor, QPainterPath
 from PySide6.QtWidgets import (
@@ -12,7 +11,8 @@ from PySide6.QtWidgets import (
     QGraphicsScene,
 )
 
-from app.floor.paths import NO_BRUSH, NO_PEN, brush, path_of, pen
+from app.floor.paths import NO_BRUSH, NO_PEN, brush, path_of, pen, same_outlines
+from app.floor.stillness import Stillness
 from app.palette import ARM_DASH, CONTACT_DASH, TIE_DASH, Palette
 from geometry.front_strings import String, StringKind
 from geometry.layout import SIDES, SideName
@@ -92,11 +92,13 @@ def _sized(item: QGraphicsItem, z: float) -> QGraphicsItem:
 class Mark(QGraphicsPathItem):
     """A sign of fixed size at a place: an outline path and a filled one over it."""
 
-    def __init__(self, scene: QGraphicsScene, outline: QPainterPath, solid: QPainterPath,
-                 z: float = MARKS_Z) -> None:
+    def __init__(self, scene: QGraphicsScene, still: Stillness, outline: QPainterPath,
+                 solid: QPainterPath, z: float = MARKS_Z) -> None:
         super().__init__(outline)
         _sized(self, z)
         self.solid = QGraphicsPathItem(solid, self)
+        self._still = still
+        self._place: XY | None = None
         scene.addItem(self)
 
     def dress(self, edge: str, fill: str | None, solid: str, width: float) -> None:
@@ -107,7 +109,11 @@ class Mark(QGraphicsPathItem):
 
     def put(self, place: XY | None) -> None:
         """Stand at a place on the floor, or vanish."""
+        if place == self._place:
+            return
+        self._place = place
         if place is not None:
+            self._still.all_moved((self, self.solid))
             self.setPos(*place)
         self.setVisible(place is not None)
 
@@ -169,17 +175,17 @@ def _pivot(kind: str) -> tuple[QPainterPath, QPainterPath]:
 class MarkItems:
     """All construction points of a car."""
 
-    def __init__(self, scene: QGraphicsScene) -> None:
-        self.centers = {side: Mark(scene, *_bob()) for side in SIDES}
-        self.roll = Mark(scene, *_ring_on_bar(), MARKS_Z + 1)
-        self.gravity = Mark(scene, *_quartered())
+    def __init__(self, scene: QGraphicsScene, still: Stillness) -> None:
+        self.centers = {side: Mark(scene, still, *_bob()) for side in SIDES}
+        self.roll = Mark(scene, still, *_ring_on_bar(), MARKS_Z + 1)
+        self.gravity = Mark(scene, still, *_quartered())
         self.pivots = {
-            (side, kind): Mark(scene, *_pivot(kind), MARKS_Z + 12)
+            (side, kind): Mark(scene, still, *_pivot(kind), MARKS_Z + 12)
             for side in SIDES
             for kind in ("string rule", "curvature center", "best fit")
         }
         self.zones = {side: self._zone(scene) for side in SIDES}
-        self._polygons: dict[SideName, list[Array]] = {side: [] for side in SIDES}
+        self._zones: dict[SideName, list[Array]] = {side: [] for side in SIDES}
 
     @staticmethod
     def _zone(scene: QGraphicsScene) -> QGraphicsPathItem:
@@ -206,6 +212,9 @@ class MarkItems:
 
     def set_zone(self, side: SideName, outlines: list[Array]) -> None:
         """Tint where a side's inner tie-rod pivot may sit: outlines (n, 2) on the floor."""
-        path = path_of([np.asarray(o, dtype=float) for o in outlines], True)
+        if same_outlines(outlines, self._zones[side]):
+            return
+        self._zones[side] = outlines
+        path = path_of(outlines, True)
         path.setFillRule(Qt.FillRule.OddEvenFill)
         self.zones[side].setPath(path)

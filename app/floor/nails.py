@@ -14,6 +14,7 @@ from PySide6.QtWidgets import (
 )
 
 from app.floor.paths import NO_BRUSH, pen
+from app.floor.stillness import Stillness
 from app.palette import Palette
 from geometry.layout import SideName
 from geometry.standing import XY
@@ -83,8 +84,9 @@ class Nail(QGraphicsEllipseItem):
 class NailItems:
     """Every nail of a car; rebuilt only when the car has other nails."""
 
-    def __init__(self, scene: QGraphicsScene) -> None:
-        self._scene = scene
+    def __init__(self, scene: QGraphicsScene, still: Stillness) -> None:
+        self._scene, self._still = scene, still
+        self._places: dict[Key, XY] = {}
         self.nails: dict[Key, Nail] = {}
         self._made: tuple[tuple[Key, ...], frozenset[str]] | None = None
         self._hovered: Key | None = None
@@ -102,11 +104,17 @@ class NailItems:
         if made != self._made:
             self._rebuild(made)
         for key, place in places.items():
-            self.nails[key].setPos(*place)
+            if self._places.get(key) != place:
+                nail = self.nails[key]
+                self._still.all_moved((nail, nail.sign))
+                nail.setPos(*place)
+        self._places = places
 
     def _rebuild(self, made: tuple[tuple[Key, ...], frozenset[str]]) -> None:
         for nail in self.nails.values():
+            self._still.forget((nail, nail.sign))
             self._scene.removeItem(nail)
+        self._places = {}
         keys, locked = made
         self.nails = {key: Nail(key, key[1] in locked) for key in keys}
         self._made = made

@@ -8,7 +8,8 @@ from PySide6.QtCore import Qt
 from PySide6.QtGui import QBrush, QColor, QLinearGradient, QPainterPath, QPen
 from PySide6.QtWidgets import QGraphicsPathItem, QGraphicsScene
 
-from app.floor.paths import NO_BRUSH, NO_PEN, brush, path_of, pen
+from app.floor.paths import NO_BRUSH, NO_PEN, brush, path_of, pen, same_outlines
+from app.floor.stillness import Stillness
 from app.palette import BROKEN_DASH, CHALK_DASH, Palette, mixed
 from geometry.front_parts import OPEN_ROLES, ROLES, Part, Role
 from geometry.layout import SIDES, SideName
@@ -39,10 +40,11 @@ def rounded(color: str, dark: bool) -> QBrush:
 class PartItems:
     """One path item per owner and role (two where outlines melt into one)."""
 
-    def __init__(self, scene: QGraphicsScene) -> None:
+    def __init__(self, scene: QGraphicsScene, still: Stillness) -> None:
+        self._still = still
         self._items: dict[tuple[SideName | None, Role], list[QGraphicsPathItem]] = {}
         self._broken: dict[SideName | None, bool] = dict.fromkeys(OWNERS, False)
-        self._shapes: dict[tuple[SideName | None, Role], tuple[bytes, ...]] = {}
+        self._shapes: dict[tuple[SideName | None, Role], list[Array]] = {}
         self._palette: Palette | None = None
         self._ratio = 1.0
         self._pens: dict[str, QPen] = {}
@@ -108,12 +110,12 @@ class PartItems:
         for key, items in self._items.items():
             outlines = grouped.get(key, [])
             # While one nail is dragged, most parts stand still and cost nothing.
-            shape = tuple(outline.tobytes() for outline in outlines)
-            if shape == self._shapes.get(key, ()):
+            if same_outlines(outlines, self._shapes.get(key, [])):
                 continue
-            self._shapes[key] = shape
+            self._shapes[key] = outlines
             path = path_of(outlines, key[1] not in OPEN_ROLES)
             for item in items:
+                self._still.moved(item)
                 item.setPath(path)
         for owner in SIDES:
             if self._broken[owner] != (owner in broken):
@@ -123,6 +125,8 @@ class PartItems:
     def show_found(self, parts: list[Part] | None) -> None:
         """The other car beneath, as chalk dust; None where there is none to see."""
         if parts is None:
-            self.found.setPath(QPainterPath())
+            if not self.found.path().isEmpty():
+                self.found.setPath(QPainterPath())
             return
+        self._still.moved(self.found)
         self.found.setPath(path_of([p.outline for p in parts if p.role in _FOUND_ROLES], True))

@@ -31,6 +31,14 @@ def brush(color: str | None) -> QBrush:
     return NO_BRUSH if color is None else QBrush(QColor(color))
 
 
+def same_outlines(some: Sequence[Array], others: Sequence[Array]) -> bool:
+    """True if two lists of outlines are the same, number for number."""
+    return len(some) == len(others) and all(
+        a is b or (a.shape == b.shape and bool((a == b).all()))
+        for a, b in zip(some, others, strict=True)
+    )
+
+
 def path_of(outlines: Iterable[Array], closed: bool) -> QPainterPath:
     """One path of many outlines (n, 2), filled as one piece where they overlap."""
     path = QPainterPath()

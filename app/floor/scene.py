@@ -12,6 +12,7 @@ from app.floor.marks import MarkItems, StringItems
 from app.floor.nails import Key, NailItems
 from app.floor.no_go import NoGoItems
 from app.floor.parts import PartItems
+from app.floor.stillness import Stillness
 from app.floor.tags import TagItems
 from app.palette import Palette
 from geometry.front_parts import car_parts, side_parts
@@ -34,12 +35,13 @@ class FloorScene(QGraphicsScene):
 
     def __init__(self) -> None:
         super().__init__()
-        self.parts = PartItems(self)
+        self._still = Stillness()
+        self.parts = PartItems(self, self._still)
         self.no_go = NoGoItems(self)
         self.strings = StringItems(self)
-        self.marks = MarkItems(self)
-        self.nails = NailItems(self)
-        self.tags = TagItems(self)
+        self.marks = MarkItems(self, self._still)
+        self.nails = NailItems(self, self._still)
+        self.tags = TagItems(self, self._still)
         self.stands: dict[SideName, Standing] = {}
         self.places: dict[Key, XY] = {}
         self.centers: dict[SideName, InstantCenter] = {}
@@ -61,6 +63,7 @@ class FloorScene(QGraphicsScene):
 
     def follow(self, solution: Solution, outline: Solution | None) -> None:
         """Move everything to where a solution has it."""
+        self._still.frame()
         both = {side: standing(solution, side) for side in SIDES}
         self.stands = both
         parts = [part for stand in both.values() for part in side_parts(stand)]
@@ -75,7 +78,8 @@ class FloorScene(QGraphicsScene):
         }
         self.nails.show(self.places, solution.layout.locked)
         self._follow_marks(solution, both)
-        self.show_zones()
+        for side in self._zones:
+            self._show_zone(side)
 
     def _follow_found(self, solution: Solution, outline: Solution | None) -> None:
         if outline is None or _same_car(solution, outline):
@@ -124,14 +128,14 @@ class FloorScene(QGraphicsScene):
     def set_zone(self, side: SideName, outlines: list[Array]) -> None:
         """Where a side's inner tie-rod pivot may sit: outlines (n, 2) in side measure."""
         self._zones[side] = outlines
-        self.show_zones()
+        self._show_zone(side)
 
-    def show_zones(self) -> None:
-        for side, outlines in self._zones.items():
-            stand = self.stands.get(side)
-            if stand is not None:
-                moved = [o * (stand.sign, 1.0) + stand.shift for o in outlines]
-                self.marks.set_zone(side, moved)
+    def _show_zone(self, side: SideName) -> None:
+        stand = self.stands.get(side)
+        if stand is not None:
+            outlines = self._zones.get(side, [])
+            moved = [o * (stand.sign, 1.0) + stand.shift for o in outlines]
+            self.marks.set_zone(side, moved)
 
 
 def _near(place: XY) -> bool:

@@ -17,6 +17,7 @@ from PySide6.QtWidgets import (
 )
 
 from app.floor.paths import brush, pen
+from app.floor.stillness import Stillness
 from app.palette import Palette
 from geometry.labels import Box, Label, place_labels
 
@@ -51,8 +52,10 @@ class TagSpec:
 class Tag(QGraphicsPathItem):
     """One strip with a bold and a plain text on one line."""
 
-    def __init__(self, scene: QGraphicsScene) -> None:
+    def __init__(self, scene: QGraphicsScene, still: Stillness) -> None:
         super().__init__()
+        self._still = still
+        self._way: tuple[float, float] | None = None
         self.setFlag(QGraphicsItem.GraphicsItemFlag.ItemIgnoresTransformations)
         self.setZValue(TAGS_Z)
         self.title = QGraphicsSimpleTextItem(self)
@@ -75,10 +78,12 @@ class Tag(QGraphicsPathItem):
         if spec.words != self._words:
             self._words = spec.words
             self._write(spec, bold, plain)
-        if spec.arrow is not None:
+        if spec.arrow is not None and spec.arrow != self._way:
+            self._way = spec.arrow
             self.arrow.setPath(_arrow_path(spec.arrow))
 
     def _write(self, spec: TagSpec, bold: QFont, plain: QFont) -> None:
+        self._still.all_moved((self, self.title, self.detail))
         x = _PAD_X + (_ARROW if spec.arrow is not None else 0.0)
         metrics = QFontMetricsF(bold)
         for item, text, font in ((self.title, spec.title, bold), (self.detail, spec.detail, plain)):
@@ -131,8 +136,8 @@ def _arrow_path(way: tuple[float, float]) -> QPainterPath:
 class TagItems:
     """All tags in view; laid out anew whenever something moves."""
 
-    def __init__(self, scene: QGraphicsScene) -> None:
-        self._scene = scene
+    def __init__(self, scene: QGraphicsScene, still: Stillness) -> None:
+        self._scene, self._still = scene, still
         self._tags: dict[str, Tag] = {}
         self._leaders: dict[str, QGraphicsLineItem] = {}
         self._offsets: dict[str, tuple[float, float]] = {}
@@ -158,7 +163,7 @@ class TagItems:
     def _tag(self, key: str) -> Tag:
         if key not in self._tags:
             assert self._palette is not None
-            tag = Tag(self._scene)
+            tag = Tag(self._scene, self._still)
             tag.dress(self._palette)
             self._tags[key] = tag
             leader = QGraphicsLineItem()

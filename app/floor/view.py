@@ -342,7 +342,6 @@ class FloorView(QWidget):
         measure (over, up; mm); None or an empty list for none.
         """
         self.scene.set_zone(side, zone_outlines(polygons))
-        self.canvas.viewport().update()
 
     # --- the measuring tape -------------------------------------------------------------
 
