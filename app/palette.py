@@ -93,6 +93,8 @@ _DARK_PARTS: dict[str, tuple[str | None, str | None]] = {
     "tie light": ("#D3A066", None),
     "arm": ("#5D6E7D", "#C3D0DB"),
     "arm light": ("#9DB0C0", None),
+    "low arm": ("#485661", "#AFBCC7"),
+    "low arm light": ("#80919F", None),
     "knuckle": ("#66727C", "#C2CCD4"),
     "knuckle light": ("#84919B", "#B6C0C8"),
     "eye": ("#6A7B8A", "#C3D0DB"),

@@ -36,6 +36,8 @@ PARTS: dict[str, tuple[str | None, str | None]] = {
     "tie light": ("#C08E58", None),
     "arm": ("#46535F", "#1C242B"),
     "arm light": ("#8796A3", None),
+    "low arm": ("#6B7783", "#1C242B"),
+    "low arm light": ("#A3AFB9", None),
     "knuckle": ("#7B868F", "#2C343B"),
     "knuckle light": ("#98A3AB", "#4C565E"),
     "eye": ("#5B6975", "#1C242B"),

@@ -23,14 +23,14 @@ from geometry.standing import XY, Standing, relay_standing, standing
 Role = Literal[
     "tire", "groove", "window", "rim", "hub", "spring", "strut", "rod", "tie", "tie light",
     "rack", "rack light", "bellows", "clamp", "relay", "relay light", "arm", "arm light",
-    "knuckle", "knuckle light", "eye", "bush", "joint",
+    "knuckle", "knuckle light", "eye", "bush", "joint", "low arm", "low arm light",
 ]
 ROLES: tuple[Role, ...] = (
     "tire", "groove", "window", "rim", "hub", "spring", "strut", "rod", "rack", "rack light",
     "bellows", "clamp", "relay", "relay light", "tie", "tie light", "arm", "arm light",
     "knuckle", "knuckle light", "eye", "bush", "joint",
 )
-"""Every role from the back to the front."""
+"""Every role of the front view from the back to the front."""
 
 OPEN_ROLES = frozenset({"groove", "rim", "spring"})
 """Roles that are lines, not filled outlines."""
@@ -162,7 +162,7 @@ def _knuckle(stand: Standing) -> Iterator[tuple[Role, Array]]:
 def car_parts(solution: Solution, both: dict[SideName, Standing]) -> list[Part]:
     """The steering's parts that belong to both sides: a rack, or a relay rod with its arms."""
     if isinstance(solution.layout.steering, RelayRod):
-        outlines = _relay(relay_standing(solution), both)
+        outlines = _relay(relay_standing(solution, both["left"].face), both)
     else:
         outlines = _rack(both)
     return [

@@ -1,8 +1,9 @@
-"""Where every point of a car stands in the front view in the chosen pose, for drawing.
+"""Where every point of a car stands on a floor in the chosen pose, for drawing.
 
 Places are (x, y) in mm: x to the car's left of its centerline, which is to the right of
-someone looking at the car from ahead; y up from the floor the car stands on at ride height.
-The body stands still and the wheels move.
+someone looking at the car from ahead; y up from the floor the car stands on at ride height,
+or on the floor from above rearward of the front axle line (see ``geometry.faces``). The body
+stands still and the wheels move.
 """
 
 from __future__ import annotations
@@ -12,6 +13,7 @@ from dataclasses import dataclass
 import numpy as np
 
 from geometry import layout as names
+from geometry.faces import FRONT, Face
 from geometry.figures import pose_points
 from geometry.layout import RELAY_POINTS, SIDES, RelayRod, SideName
 from geometry.linkage import Array
@@ -57,34 +59,34 @@ class Standing:
     axle: XY
     contact: XY
     shift: XY
+    face: Face = FRONT
 
     @property
     def sign(self) -> float:
         return sign_of(self.side)
 
-    def at(self, over: float, up: float) -> XY:
-        """A place in this side's measures as a place on the floor."""
-        return self.sign * over, up
+    def at(self, over: float, second: float) -> XY:
+        """A place in this side's two measures as a place on the floor."""
+        return self.sign * over, self.face.way * second
 
 
-def standing(solution: Solution, name: SideName) -> Standing:
-    """One side of a solved car in its chosen pose."""
+def standing(solution: Solution, name: SideName, face: Face = FRONT) -> Standing:
+    """One side of a solved car in its chosen pose, on the floor that ``face`` shows."""
     state = solution.sides[name]
     sign = sign_of(name)
-    measured = {key: (sign * p.over, p.up) for key, p in state.side.points.items()}
+    measured = {key: face.place(sign, p) for key, p in state.side.points.items()}
     now = pose_points(state.side, state.corner, state.now)
     moved = {
-        key: (sign * float(place[1, 0]), float(place[2, 0]))
+        key: face.seen(sign, place[:, 0])
         for key, place in now.items()
         if bool(np.isfinite(place[:, 0]).all())
     }
     meets = bool(state.now.assembles[0])
     poses = state.now if meets else state.ride
     spin, contact = poses.spin_axis[:, 0], poses.contact[:, 0]
-    axle = _unit((sign * float(spin[1]), float(spin[2])))
+    axle = _unit(face.seen(sign, spin))
     if axle is None:
-        camber = state.side.static_camber
-        axle = (sign * float(np.cos(camber)), -float(np.sin(camber)))
+        axle = _measured_axle(state, sign, face)
     wheel = state.side[names.WHEEL_CENTER]
     shift = state.shift[:, 0]
     moves = meets and bool(np.isfinite(shift).all())
@@ -94,34 +96,41 @@ def standing(solution: Solution, name: SideName) -> Standing:
         meets,
         {**measured, **moved} if meets else measured,
         axle,
-        (sign * float(contact[1]), float(contact[2]))
+        face.seen(sign, contact)
         if np.isfinite(contact).all()
-        else (sign * wheel.over, wheel.up - state.side.tire.radius),
-        (sign * float(shift[1]), float(shift[2])) if moves else (0.0, 0.0),
+        else face.place(sign, wheel._replace(up=wheel.up - state.side.tire.radius)),
+        face.seen(sign, shift) if moves else (0.0, 0.0),
+        face,
     )
 
 
-def relay_standing(solution: Solution) -> dict[str, XY]:
+def _measured_axle(state: CornerState, sign: float, face: Face) -> XY:
+    """The axle's direction by the static toe and camber, where no pose has one."""
+    camber, toe = state.side.static_camber, state.side.static_toe
+    angle = -camber if face.second == "up" else toe
+    return sign * float(np.cos(angle)), face.way * float(np.sin(angle))
+
+
+def relay_standing(solution: Solution, face: Face = FRONT) -> dict[str, XY]:
     """The relay-rod steering's points as they stand; empty for a rack."""
     relay = solution.layout.steering
     if not isinstance(relay, RelayRod):
         return {}
     out = {
-        name: (sign_of(relay.side_of(name)) * relay[name].over, relay[name].up)
-        for name in RELAY_POINTS
+        name: face.place(sign_of(relay.side_of(name)), relay[name]) for name in RELAY_POINTS
     }
     if solution.rack:
         pitman, idler = relay_ends(relay, solution.rack)
         for name, place in ((names.PITMAN_END, pitman), (names.IDLER_END, idler)):
             if bool(np.isfinite(place).all()):
-                out[name] = (float(place[1, 0]), float(place[2, 0]))
+                out[name] = face.seen(1.0, place[:, 0])
     return out
 
 
-def nail_places(solution: Solution) -> dict[tuple[SideName, str], XY]:
+def nail_places(solution: Solution, face: Face = FRONT) -> dict[tuple[SideName, str], XY]:
     """Where each nail stands on the floor in the chosen pose, in the layout's order."""
-    sides = {side: standing(solution, side).points for side in SIDES}
-    relay = relay_standing(solution)
+    sides = {side: standing(solution, side, face).points for side in SIDES}
+    relay = relay_standing(solution, face)
     return {
         (side, name): relay[name] if name in relay else sides[side][name]
         for side, name in solution.layout.nails()
