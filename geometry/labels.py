@@ -6,13 +6,11 @@ Works in any unit (pixels on the screen, mm on paper) with y in either direction
 from __future__ import annotations
 
 import math
-from collections.abc import Mapping, Sequence
+from collections.abc import Iterable, Iterator, Mapping, Sequence
 from dataclasses import dataclass
 from typing import NamedTuple
 
 import numpy as np
-
-from geometry.linkage import Array
 
 
 class Box(NamedTuple):
@@ -73,19 +71,42 @@ GAP = 3.0
 """Clear room kept between two labels."""
 
 _SOFT, _MARK, _FALLBACK, _HABIT = 90.0, 90.0, 200.0, 12.0
-_DIRECTIONS = np.array(
-    [(1.0, -0.6), (-1.0, -0.6), (1.0, 0.6), (-1.0, 0.6), (0.0, -1.0), (0.0, 1.0), (1.0, 0.0),
-     (-1.0, 0.0)]
+_DIRECTIONS = (
+    (1.0, -0.6), (-1.0, -0.6), (1.0, 0.6), (-1.0, 0.6), (0.0, -1.0), (0.0, 1.0), (1.0, 0.0),
+    (-1.0, 0.0),
 )
-_RINGS = np.array([0.0, 14.0, 30.0, 52.0, 84.0, 130.0])
-_WAYS = np.tile(_DIRECTIONS / np.hypot(*_DIRECTIONS.T)[:, None], (_RINGS.size, 1))
-_REACHES = np.repeat(_RINGS, len(_DIRECTIONS))
-# A box stands beyond its place in the direction it was sent to.
-_SHARES = np.tile(np.where(_DIRECTIONS > 0, 0.0, np.where(_DIRECTIONS < 0, 1.0, 0.5)),
-                  (_RINGS.size, 1))
-_COSTS = _REACHES + 2.0 * np.tile(np.arange(len(_DIRECTIONS)), _RINGS.size)
-_SLIDES = np.concatenate([[0.0], np.repeat(np.arange(6.0, 300.0, 6.0), 2)])
-_SLIDES[2::2] *= -1.0
+_RINGS = (0.0, 14.0, 30.0, 52.0, 84.0, 130.0)
+
+
+@dataclass(frozen=True)
+class _Way:
+    """A way to go from an anchor: a unit direction, how far, and the box's share beyond it."""
+
+    cost: float
+    x: float
+    y: float
+    reach: float
+    share_x: float
+    share_y: float
+
+
+def _ways() -> list[_Way]:
+    """Every way to try, cheapest first."""
+    out = []
+    for ring in _RINGS:
+        for rank, (x, y) in enumerate(_DIRECTIONS):
+            # A box stands beyond its place in the direction it was sent to.
+            shares = [0.0 if part > 0.0 else 1.0 if part < 0.0 else 0.5 for part in (x, y)]
+            size = math.hypot(x, y)
+            out.append(_Way(ring + 2.0 * rank, x / size, y / size, ring, *shares))
+    return sorted(out, key=lambda way: way.cost)
+
+
+_WAYS = _ways()
+_SLIDES = (0.0, *(sign * step for step in range(6, 300, 6) for sign in (1.0, -1.0)))
+
+Place = tuple[float, float, float]
+"""A place to try: its cost there if nothing is in the way, then left and top."""
 
 
 def place_labels(
@@ -101,8 +122,7 @@ def place_labels(
     where there is a choice. ``before`` holds each label's last offset (left, top) from its
     anchor, and a label stays there if that is nearly as good, so that labels don't jump.
     """
-    taken = _rows(hard)
-    shy = _rows(soft)
+    taken, shy = list(hard), list(soft)
     out: dict[str, Box] = {}
     for label in labels:
         if label.width > area.width or label.height > area.height:
@@ -110,85 +130,102 @@ def place_labels(
         box = _best(label, area, shy, taken, (before or {}).get(label.key))
         if box is not None:
             out[label.key] = box
-            taken = np.vstack([taken, _rows([box.grown(GAP)])])
+            taken.append(box.grown(GAP))
     return out
 
 
-def _rows(boxes: Sequence[Box]) -> Array:
-    """Boxes as rows of left, top, right, bottom (n, 4)."""
-    rows = np.array(boxes, dtype=float).reshape(-1, 4)
-    rows[:, 2:] += rows[:, :2]
-    return rows
-
-
-def _overlaps(lefts_tops: Array, size: Array, others: Array) -> np.ndarray:
-    """(n, m) bool: which of n boxes of one size overlap which of m others."""
-    low = lefts_tops[:, None, :]
-    return np.asarray(
-        ((low < others[None, :, 2:]) & (low + size > others[None, :, :2])).all(axis=2)
-    )
-
-
 def _best(
-    label: Label, area: Box, soft: Array, taken: Array, before: tuple[float, float] | None
+    label: Label, area: Box, soft: Sequence[Box], taken: Sequence[Box],
+    before: tuple[float, float] | None,
 ) -> Box | None:
     x = min(max(label.anchor[0], area.left), area.right)
     y = min(max(label.anchor[1], area.top), area.bottom)
-    anchor, size = np.array([x, y]), np.array([label.width, label.height])
-    if label.edge:
-        places, costs = _along_edge(anchor, size, area)
-    else:
-        places = anchor + (label.clear + _REACHES)[:, None] * _WAYS - _SHARES * size
-        costs = _COSTS.copy()
-        if before is not None:
-            places = np.vstack([places, anchor + before])
-            off = np.maximum(np.maximum(before, -np.asarray(before) - size), 0.0)
-            costs = np.append(costs, 0.8 * float(np.hypot(*off)) - _HABIT)
-    index = _cheapest(label, anchor, size, area, places, costs, soft, taken)
-    if index is None:
-        places = _grid(label, area)
-        costs = _FALLBACK + np.hypot(*(places - anchor).T)
-        index = _cheapest(label, anchor, size, area, places, costs, soft, taken)
-    return None if index is None else Box(*index, label.width, label.height)
+    places = _along_edge(label, x, y, area) if label.edge else _around(label, x, y, before)
+    mark = 0.7 * label.clear
+    shy = [(box.left, box.top, box.right, box.bottom, _SOFT) for box in soft]
+    if not label.edge:
+        shy.append((x - mark, y - mark, x + mark, y + mark, _MARK))
+    found = _cheapest(label, area, places, shy, taken)
+    if found is None:
+        found = _cheapest(label, area, _grid(label, x, y, area), shy, taken)
+    return None if found is None else Box(*found, label.width, label.height)
 
 
 def _cheapest(
-    label: Label, anchor: Array, size: Array, area: Box, places: Array, costs: Array,
-    soft: Array, taken: Array,
+    label: Label, area: Box, places: Iterable[Place],
+    shy: Sequence[tuple[float, float, float, float, float]], taken: Sequence[Box],
 ) -> tuple[float, float] | None:
-    """The cheapest place (left, top) that is free, after moving each into the area."""
-    low = np.array([area.left, area.top])
-    inside = np.clip(places, low, np.array([area.right, area.bottom]) - size)
-    costs = costs + 0.5 * np.abs(inside - places).sum(axis=1)
-    free = ~_overlaps(inside, size, taken).any(axis=1)
-    if not free.any():
-        return None
-    costs = costs + _SOFT * _overlaps(inside, size, soft).sum(axis=1)
-    mark = 0.7 * label.clear
-    around = np.concatenate([anchor - mark, anchor + mark])[None, :]
-    costs = costs + (0.0 if label.edge else _MARK) * _overlaps(inside, size, around)[:, 0]
-    best = int(np.argmin(np.where(free, costs, math.inf)))
-    return float(inside[best, 0]), float(inside[best, 1])
+    """The cheapest place (left, top) that is free, after moving each into the area.
+
+    ``places`` come cheapest first, so that the search ends at the first one that could not
+    be better any more, which is nearly always after a few.
+    """
+    width, height = label.width, label.height
+    most_left, most_top = area.right - width, area.bottom - height
+    best, least = None, math.inf
+    for cost, left, top in places:
+        if cost >= least:
+            break
+        x = min(max(left, area.left), most_left)
+        y = min(max(top, area.top), most_top)
+        cost += 0.5 * (abs(x - left) + abs(y - top))
+        if cost >= least:
+            continue
+        right, bottom = x + width, y + height
+        if any(
+            x < box.left + box.width and right > box.left
+            and y < box.top + box.height and bottom > box.top
+            for box in taken
+        ):
+            continue
+        for a, b, c, d, penalty in shy:
+            if x < c and right > a and y < d and bottom > b:
+                cost += penalty
+        if cost < least:
+            best, least = (x, y), cost
+    return best
 
 
-def _along_edge(anchor: Array, size: Array, area: Box) -> tuple[Array, Array]:
+def _around(
+    label: Label, x: float, y: float, before: tuple[float, float] | None
+) -> Iterator[Place]:
+    """Places round an anchor, and the one it had before where habit puts it among them."""
+    width, height, clear = label.width, label.height, label.clear
+    old = math.inf
+    if before is not None:
+        off_x = max(before[0], -before[0] - width, 0.0)
+        off_y = max(before[1], -before[1] - height, 0.0)
+        old = 0.8 * math.hypot(off_x, off_y) - _HABIT
+    for way in _WAYS:
+        if before is not None and old < way.cost:
+            yield old, x + before[0], y + before[1]
+            before = None
+        far = clear + way.reach
+        left = x + far * way.x - way.share_x * width
+        top = y + far * way.y - way.share_y * height
+        yield way.cost, left, top
+    if before is not None:
+        yield old, x + before[0], y + before[1]
+
+
+def _along_edge(label: Label, x: float, y: float, area: Box) -> Iterator[Place]:
     """Places against the area's edge nearest to the anchor, sliding along it."""
-    gaps = (
-        anchor[0] - area.left, area.right - anchor[0], anchor[1] - area.top,
-        area.bottom - anchor[1],
-    )
-    start = anchor - 0.5 * size
-    upright = int(np.argmin(gaps)) < 2
-    slide = np.stack([0.0 * _SLIDES, _SLIDES], axis=1) if upright else np.stack(
-        [2.0 * _SLIDES, 0.0 * _SLIDES], axis=1
-    )
-    start[0] = (area.left, area.right - size[0], start[0], start[0])[int(np.argmin(gaps))]
-    start[1] = (start[1], start[1], area.top, area.bottom - size[1])[int(np.argmin(gaps))]
-    return start + slide, np.abs(_SLIDES)
+    gaps = (x - area.left, area.right - x, y - area.top, area.bottom - y)
+    edge = gaps.index(min(gaps))
+    left, top = x - 0.5 * label.width, y - 0.5 * label.height
+    left = (area.left, area.right - label.width, left, left)[edge]
+    top = (top, top, area.top, area.bottom - label.height)[edge]
+    for slide in _SLIDES:
+        if edge < 2:
+            yield abs(slide), left, top + slide
+        else:
+            yield abs(slide), left + 2.0 * slide, top
 
 
-def _grid(label: Label, area: Box) -> Array:
-    """Places all over the area (n, 2), for a label with no room near its anchor."""
-    lefts = np.arange(area.left, area.right - label.width + 1e-9, 24.0)
-    tops = np.arange(area.top, area.bottom - label.height + 1e-9, 8.0)
-    return np.stack(np.meshgrid(lefts, tops), axis=-1).reshape(-1, 2)
+def _grid(label: Label, x: float, y: float, area: Box) -> list[Place]:
+    """Places all over the area, nearest first, for a label with no room near its anchor."""
+    lefts = np.arange(area.left, area.right - label.width + 1e-9, 24.0).tolist()
+    tops = np.arange(area.top, area.bottom - label.height + 1e-9, 8.0).tolist()
+    return sorted(
+        (_FALLBACK + math.hypot(left - x, top - y), left, top) for top in tops for left in lefts
+    )

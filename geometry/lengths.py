@@ -169,14 +169,27 @@ def format_length(
     return f"{text} {unit}" if mark else text
 
 
+def inch_steps(mm: float, denominator: int) -> int:
+    """The nearest whole number of ``1/denominator`` inches, halves to even, exactly.
+
+    Floats decide wherever their last digits can't matter; fractions take a hundred times
+    as long, and a drag shows dozens of lengths a frame.
+    """
+    rough = mm / 25.4 * denominator
+    nearest = math.floor(rough + 0.5)
+    if abs(abs(rough - nearest) - 0.5) > 1e-6 and abs(rough) < 1e9:
+        return nearest
+    return round(Fraction(mm) / _UNIT_MM["in"] * denominator)
+
+
 def _tape(mm: float, denominator: int) -> str:
-    steps = round(Fraction(mm) / _UNIT_MM["in"] * denominator)
+    steps = inch_steps(mm, denominator)
     whole, part = divmod(abs(steps), denominator)
     sign = "-" if steps < 0 else ""
     if part == 0:
         return f"{sign}{whole}"
-    fraction = Fraction(part, denominator)
-    text = f"{fraction.numerator}/{fraction.denominator}"
+    common = math.gcd(part, denominator)
+    text = f"{part // common}/{denominator // common}"
     return f"{sign}{whole} {text}" if whole else f"{sign}{text}"
 
 

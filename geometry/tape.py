@@ -7,7 +7,7 @@ from dataclasses import dataclass
 from fractions import Fraction
 
 from geometry.layout import UnitName
-from geometry.lengths import format_length
+from geometry.lengths import format_length, inch_steps
 
 _UNIT = {"in": Fraction(254, 10), "mm": Fraction(1)}
 SNAP = {"in": Fraction(1, 16), "mm": Fraction(1)}
@@ -67,8 +67,7 @@ def tape_text(mm: float, unit: UnitName) -> str:
     """
     if unit == "in":
         for denominator in (16, 32, 64):
-            step = Fraction(1, denominator) * _UNIT["in"]
-            if abs(float(_multiple(mm, step) * step) - mm) < 1e-6:
+            if abs(inch_steps(mm, denominator) * 25.4 / denominator - mm) < 1e-6:
                 return format_length(mm, unit, denominator)
     return format_length(mm, unit)
 

@@ -11,7 +11,7 @@ from PySide6.QtWidgets import (
     QGraphicsScene,
 )
 
-from app.floor.paths import NO_BRUSH, NO_PEN, brush, path_of, pen, same_outlines
+from app.floor.paths import NO_BRUSH, NO_PEN, brush, path_of, pen, same_outlines, same_place
 from app.floor.stillness import Stillness
 from app.palette import ARM_DASH, CONTACT_DASH, TIE_DASH, Palette
 from geometry.front_strings import String, StringKind
@@ -109,7 +109,7 @@ class Mark(QGraphicsPathItem):
 
     def put(self, place: XY | None) -> None:
         """Stand at a place on the floor, or vanish."""
-        if place == self._place:
+        if same_place(place, self._place):
             return
         self._place = place
         if place is not None:

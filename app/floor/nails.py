@@ -13,7 +13,7 @@ from PySide6.QtWidgets import (
     QGraphicsScene,
 )
 
-from app.floor.paths import NO_BRUSH, pen
+from app.floor.paths import NO_BRUSH, pen, same_place
 from app.floor.stillness import Stillness
 from app.palette import Palette
 from geometry.layout import SideName
@@ -104,11 +104,11 @@ class NailItems:
         if made != self._made:
             self._rebuild(made)
         for key, place in places.items():
-            if self._places.get(key) != place:
+            if not same_place(self._places.get(key), place):
                 nail = self.nails[key]
                 self._still.all_moved((nail, nail.sign))
                 nail.setPos(*place)
-        self._places = places
+                self._places[key] = place
 
     def _rebuild(self, made: tuple[tuple[Key, ...], frozenset[str]]) -> None:
         for nail in self.nails.values():

@@ -8,9 +8,13 @@ from PySide6.QtCore import QPointF, Qt
 from PySide6.QtGui import QBrush, QColor, QPainterPath, QPen, QPolygonF
 
 from geometry.linkage import Array
+from geometry.standing import XY
 
 NO_PEN = QPen(Qt.PenStyle.NoPen)
 NO_BRUSH = QBrush(Qt.BrushStyle.NoBrush)
+
+_STILL = 1e-6
+"""What moved by less, mm, stands still: far below a pixel, far above a solve's last digits."""
 
 
 def pen(
@@ -32,11 +36,18 @@ def brush(color: str | None) -> QBrush:
 
 
 def same_outlines(some: Sequence[Array], others: Sequence[Array]) -> bool:
-    """True if two lists of outlines are the same, number for number."""
+    """True if two lists of outlines are the same but for the last digits of a solve."""
     return len(some) == len(others) and all(
-        a is b or (a.shape == b.shape and bool((a == b).all()))
+        a is b or (a.shape == b.shape and bool((abs(a - b) < _STILL).all()))
         for a, b in zip(some, others, strict=True)
     )
+
+
+def same_place(a: XY | None, b: XY | None) -> bool:
+    """The same of two places, which may be none."""
+    if a is None or b is None:
+        return a is b
+    return abs(a[0] - b[0]) < _STILL and abs(a[1] - b[1]) < _STILL
 
 
 def path_of(outlines: Iterable[Array], closed: bool) -> QPainterPath:

@@ -3,8 +3,11 @@
 from __future__ import annotations
 
 import math
+from fractions import Fraction
 
 import pytest
+from hypothesis import given
+from hypothesis import strategies as st
 
 from geometry.lengths import (
     AngleTextError,
@@ -13,6 +16,7 @@ from geometry.lengths import (
     format_angle_exact,
     format_exact,
     format_length,
+    inch_steps,
     parse_angle,
     parse_length,
 )
@@ -139,6 +143,18 @@ def test_a_comma_before_three_digits_is_a_decimal_comma_where_that_is_known() ->
 )
 def test_inches_are_shown_as_a_tape_reads(mm: float, text: str) -> None:
     assert format_length(mm, "in") == text
+
+
+_HALVES = st.builds(
+    lambda halves, denominator, way: math.nextafter(25.4 * halves / (2 * denominator), way),
+    st.integers(-9000, 9000), st.sampled_from([8, 16, 64]), st.sampled_from([-1e9, 0.0, 1e9]),
+)
+"""Lengths at, or a float beside, the middle between two marks."""
+
+
+@given(st.one_of(st.floats(-1e300, 1e300), _HALVES), st.sampled_from([1, 8, 16, 32, 64, 100]))
+def test_a_length_goes_to_the_mark_that_exact_fractions_say(mm: float, denominator: int) -> None:
+    assert inch_steps(mm, denominator) == round(Fraction(mm) * 10 / 254 * denominator)
 
 
 def test_the_tape_can_be_finer_or_coarser() -> None:
