@@ -553,9 +553,11 @@ class Corner:
                 inside, outside = np.zeros_like(end), end
                 for _ in range(50):
                     middle = 0.5 * (inside + outside)
-                    near = self._wheel_height(middle - 1e-7, inner)
-                    far = self._wheel_height(middle + 1e-7, inner)
-                    fine = (near[1] >= 0) & (far[1] >= 0) & (far[0] > near[0])
+                    # Looked at toward ride height only: a tie rod that comes straight moves
+                    # the wheel fast just there, and a look beyond would end too soon.
+                    height, margin = self._wheel_height(middle, inner)
+                    before = self._wheel_height(middle - np.copysign(1e-7, end), inner)[0]
+                    fine = (margin >= 0) & (np.copysign(1.0, end) * (height - before) > 0)
                     inside = np.where(fine, middle, inside)
                     outside = np.where(fine, outside, middle)
                 travel = self._wheel_height(inside, inner)[0] - self.wheel_center[2]
