@@ -114,11 +114,13 @@ class MeasureSheetPanel(Card):
         self._show_refusal(self.model.refusal(current))
         row = self.model.rows[current.row()]
         if isinstance(row, str) and not self._answering:
+            self._answering = True
             self._document.select(self.model.side, row)
+            self._answering = False
 
     def _nail_chosen(self) -> None:
         chosen = self._document.selection
-        if chosen is None:
+        if chosen is None or self._answering:
             return
         side, name = chosen
         if not self._document.layout.linked and side != self.model.side:

@@ -95,8 +95,10 @@ class SheetTable(QTableView):
             self.copy()
         elif event.matches(QKeySequence.StandardKey.Paste):
             self.paste()
-        elif event.key() in (Qt.Key.Key_Return, Qt.Key.Key_Enter) and index.isValid():
-            self.edit(index)
+        elif event.key() in (Qt.Key.Key_Return, Qt.Key.Key_Enter):
+            # The same key, passed on by an editor that it is just closing, is not another one.
+            if self.state() != self.State.EditingState and self._cells.flags(index) & _EDITABLE:
+                self.edit(index)
         elif event.key() == Qt.Key.Key_Escape and self._cells.refusal(index):
             self._cells.take_back(index)
         else:
