@@ -40,6 +40,7 @@ class Commands(QObject):
         self.window = window
         self.document = window.document
         self.actions: dict[str, QAction] = {}
+        self._checking = False
         self._file_menu()
         self._edit_menu()
         self._view_menu()
@@ -74,7 +75,7 @@ class Commands(QObject):
             action.setIcon(QIcon(str(data_path("icons") / f"{icon}.svg")))
         if checkable:
             action.setCheckable(True)
-            action.toggled.connect(act)
+            action.toggled.connect(partial(self._toggle, act))
         else:
             action.triggered.connect(lambda _checked=False: act())
         if on_floor:
@@ -208,11 +209,14 @@ class Commands(QObject):
         return found is not None and found != self.document.layout.point(*chosen)
 
     def check(self, name: str, on: bool) -> None:
-        """Set a check mark without acting on it."""
-        action = self.actions[name]
-        blocked = action.blockSignals(True)
-        action.setChecked(on)
-        action.blockSignals(blocked)
+        """Set a check mark, also on the tool strip's button, without acting on it."""
+        self._checking = True
+        self.actions[name].setChecked(on)
+        self._checking = False
+
+    def _toggle(self, act: Callable[..., object], on: bool) -> None:
+        if not self._checking:
+            act(on)
 
     # --- file -----------------------------------------------------------------------
 
