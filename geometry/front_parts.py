@@ -7,15 +7,16 @@ Outlines are (n, 2) arrays on the floor, mm (see ``geometry.standing``).
 from __future__ import annotations
 
 import math
-from collections.abc import Iterator
+from collections.abc import Callable, Iterator
 from dataclasses import dataclass
-from typing import Literal
+from functools import lru_cache
+from typing import Literal, ParamSpec, cast
 
 import numpy as np
 
 from geometry import layout as names
 from geometry import shapes
-from geometry.layout import SIDES, RelayRod, SideName
+from geometry.layout import RELAY_POINTS, SIDES, RelayRod, SideName, Tire
 from geometry.linkage import Array
 from geometry.solution import Solution
 from geometry.standing import XY, Standing, relay_standing, standing
@@ -37,6 +38,8 @@ OPEN_ROLES = frozenset({"groove", "rim", "spring"})
 
 ARM, TIE, RACK, RELAY = 15.0, 9.5, 22.0, 13.0
 _HUB_FACE = 30.0
+_KEPT = 32
+"""Outlines remembered of each sort: both sides of both cars, on both floors, and more."""
 
 
 @dataclass(frozen=True)
@@ -60,40 +63,61 @@ def front_parts(solution: Solution) -> list[Part]:
     return parts
 
 
+Outlines = Iterator[tuple[Role, Array]]
+P = ParamSpec("P")
+
+
+def _once(draw: Callable[P, Outlines]) -> Callable[P, tuple[tuple[Role, Array], ...]]:
+    """Outlines remembered by what they are made of; those without a place are left out.
+
+    While one nail is dragged most parts stand still, and the same arrays tell that they do.
+    """
+
+    def drawn(*given: P.args, **named: P.kwargs) -> tuple[tuple[Role, Array], ...]:
+        found = [
+            (role, outline)
+            for role, outline in draw(*given, **named)
+            if math.isfinite(float(outline.sum()))
+        ]
+        for _, outline in found:
+            outline.setflags(write=False)
+        return tuple(found)
+
+    return cast("Callable[P, tuple[tuple[Role, Array], ...]]", lru_cache(maxsize=_KEPT)(drawn))
+
+
 def side_parts(stand: Standing) -> list[Part]:
-    """The parts of one side."""
-    return [
-        Part(stand.side, role, outline)
-        for role, outline in _side_outlines(stand)
-        if math.isfinite(float(outline.sum()))
-    ]
+    """The parts of one side. Outlines of parts that stand still are the same arrays again."""
+    return [Part(stand.side, role, outline) for role, outline in _side_outlines(stand)]
 
 
-def _side_outlines(stand: Standing) -> Iterator[tuple[Role, Array]]:
-    yield from _wheel(stand)
-    points = stand.points
+def _side_outlines(stand: Standing) -> Outlines:
+    side, points = stand.state.side, stand.points
+    yield from _wheel(side.tire, points[names.WHEEL_CENTER], stand.axle, stand.sign)
     if names.SPRING_TOP in points and names.SPRING_LOWER in points:
-        yield "spring", shapes.coil(points[names.SPRING_LOWER], points[names.SPRING_TOP], 42.0)
-    if stand.state.side.is_strut:
-        yield from _strut(points)
-    for arm in ("lower", "upper"):
-        yield from _arm(points, arm)
-    yield from _knuckle(stand)
-    yield "tie", shapes.tube(points[names.TIE_INNER], points[names.TIE_OUTER], TIE)
-    yield "tie light", shapes.sheen(points[names.TIE_INNER], points[names.TIE_OUTER], TIE)
-    yield "joint", shapes.circle(points[names.TIE_OUTER], 15.0)
+        yield from _spring(points[names.SPRING_LOWER], points[names.SPRING_TOP])
+    if side.is_strut:
+        yield from _strut(points[names.STRUT_LOWER], points[names.STRUT_TOP])
+    for arm, size in (("lower", ARM), ("upper", 0.86 * ARM)):
+        ball = points.get(f"{arm} ball joint")
+        if ball is not None:
+            yield from _arm(ball, _bushings(points, arm), size)
+    upper = points[names.STRUT_LOWER if side.is_strut else names.UPPER_BALL]
+    yield from _knuckle(
+        (points[names.LOWER_BALL], upper), points[names.TIE_OUTER],
+        points[names.WHEEL_CENTER], stand.axle, side.tire.offset,
+    )
+    yield from _tie(points[names.TIE_INNER], points[names.TIE_OUTER])
 
 
-def _wheel(stand: Standing) -> Iterator[tuple[Role, Array]]:
-    side = stand.state.side
-    tire = side.tire
+@_once
+def _wheel(tire: Tire, center: XY, axle: XY, sign: float) -> Outlines:
     if not tire.radius > 1.0:
         return
-    center, axle = stand.points[names.WHEEL_CENTER], stand.axle
 
     def put(local: Array) -> Array:
         # The wheel's own axes are x outboard and y up; on the right side that is mirrored.
-        return shapes.carried(local * (1.0, stand.sign), center, axle)
+        return shapes.carried(local * (1.0, sign), center, axle)
 
     yield "tire", put(shapes.tire(tire.radius, tire.width))
     for line in shapes.grooves(tire.radius, tire.width):
@@ -106,8 +130,21 @@ def _wheel(stand: Standing) -> Iterator[tuple[Role, Array]]:
     yield "hub", put(shapes.hub(tire.offset, tire.rim_width, tire.radius))
 
 
-def _strut(points: dict[str, XY]) -> Iterator[tuple[Role, Array]]:
-    low, top = np.array(points[names.STRUT_LOWER]), np.array(points[names.STRUT_TOP])
+@_once
+def _spring(low: XY, top: XY) -> Outlines:
+    yield "spring", shapes.coil(low, top, 42.0)
+
+
+@_once
+def _tie(inner: XY, outer: XY) -> Outlines:
+    yield "tie", shapes.tube(inner, outer, TIE)
+    yield "tie light", shapes.sheen(inner, outer, TIE)
+    yield "joint", shapes.circle(outer, 15.0)
+
+
+@_once
+def _strut(low_end: XY, top_end: XY) -> Outlines:
+    low, top = np.array(low_end), np.array(top_end)
     yield "rod", shapes.tube(low + 0.5 * (top - low), top, 9.0)
     yield "strut", shapes.tube(low, low + 0.58 * (top - low), 25.0)
     yield "spring", shapes.coil(low + 0.5 * (top - low), low + 0.97 * (top - low), 55.0, 5.0)
@@ -119,16 +156,13 @@ def _strut(points: dict[str, XY]) -> Iterator[tuple[Role, Array]]:
         yield "clamp", shapes.tube(top - 58.0 * square, top + 58.0 * square, 8.0)
 
 
-def _arm(points: dict[str, XY], arm: str) -> Iterator[tuple[Role, Array]]:
-    ball = points.get(f"{arm} ball joint")
-    if ball is None:
-        return
-    bushings = [
-        points[name]
-        for name in (f"{arm} inner pivot", f"{arm} inner pivot rear", f"{arm} inner pivot front")
-        if name in points
-    ]
-    size = ARM if arm == "lower" else 0.86 * ARM
+def _bushings(points: dict[str, XY], arm: str) -> tuple[XY, ...]:
+    found = (f"{arm} inner pivot", f"{arm} inner pivot rear", f"{arm} inner pivot front")
+    return tuple(points[name] for name in found if name in points)
+
+
+@_once
+def _arm(ball: XY, bushings: tuple[XY, ...], size: float) -> Outlines:
     for bushing in bushings:
         yield "arm", shapes.tube(bushing, ball, size, 0.8 * size)
         yield "arm light", shapes.sheen(bushing, ball, 0.9 * size)
@@ -138,16 +172,16 @@ def _arm(points: dict[str, XY], arm: str) -> Iterator[tuple[Role, Array]]:
     yield "joint", shapes.circle(ball, 1.25 * size)
 
 
-def _knuckle(stand: Standing) -> Iterator[tuple[Role, Array]]:
-    points = stand.points
-    lower = np.array(points[names.LOWER_BALL])
-    strut = stand.state.side.is_strut
-    upper = np.array(points[names.STRUT_LOWER if strut else names.UPPER_BALL])
-    center, axle = np.array(points[names.WHEEL_CENTER]), np.array(stand.axle)
-    hub = center + axle * (min(stand.state.side.tire.offset, 60.0) - 10.0 - _HUB_FACE)
+@_once
+def _knuckle(
+    ends: tuple[XY, XY], tie_outer: XY, wheel_center: XY, wheel_axle: XY, offset: float
+) -> Outlines:
+    lower, upper = np.array(ends[0]), np.array(ends[1])
+    center, axle = np.array(wheel_center), np.array(wheel_axle)
+    hub = center + axle * (min(offset, 60.0) - 10.0 - _HUB_FACE)
     yield "knuckle", shapes.tube(lower, hub, 17.0, 40.0)
     yield "knuckle", shapes.tube(upper, hub, 17.0, 40.0)
-    outer = np.array(points[names.TIE_OUTER])
+    outer = np.array(tie_outer)
     way = upper - lower
     size = float(way @ way)
     # The steering arm springs from the knuckle nearest to the outer tie-rod end.
@@ -163,21 +197,16 @@ def car_parts(solution: Solution, both: dict[SideName, Standing]) -> list[Part]:
     """The steering's parts that belong to both sides: a rack, or a relay rod with its arms."""
     if isinstance(solution.layout.steering, RelayRod):
         outlines = _relay(relay_standing(solution, both["left"].face), both)
-    else:
-        outlines = _rack(both)
-    return [
-        Part(None, role, outline)
-        for role, outline in outlines
-        if math.isfinite(float(outline.sum()))
-    ]
+        return [Part(None, role, outline) for role, outline in outlines]
+    inner = [both[side].points[names.TIE_INNER] for side in SIDES]
+    shifts = [both[side].shift if both[side].meets else (0.0, 0.0) for side in SIDES]
+    return [Part(None, role, outline) for role, outline in _rack(*inner, *shifts)]
 
 
-def _rack(both: dict[SideName, Standing]) -> Iterator[tuple[Role, Array]]:
-    inner = {side: np.array(stand.points[names.TIE_INNER]) for side, stand in both.items()}
-    rest = {
-        side: inner[side] - np.array(stand.shift) if stand.meets else inner[side]
-        for side, stand in both.items()
-    }
+@_once
+def _rack(left: XY, right: XY, left_shift: XY, right_shift: XY) -> Outlines:
+    inner = {"left": np.array(left), "right": np.array(right)}
+    rest = {"left": inner["left"] - left_shift, "right": inner["right"] - right_shift}
     way = rest["left"] - rest["right"]
     length = float(np.hypot(way[0], way[1]))
     if not length > 1.0:
@@ -196,20 +225,25 @@ def _rack(both: dict[SideName, Standing]) -> Iterator[tuple[Role, Array]]:
         yield "bellows", shapes.bellows(ends[side], inner[side], 1.05 * RACK, 0.75 * RACK)
 
 
-def _relay(points: dict[str, XY], both: dict[SideName, Standing]) -> Iterator[tuple[Role, Array]]:
-    pitman, idler = points[names.PITMAN_END], points[names.IDLER_END]
+def _relay(
+    points: dict[str, XY], both: dict[SideName, Standing]
+) -> tuple[tuple[Role, Array], ...]:
+    inner = [stand.points[names.TIE_INNER] for stand in both.values()]
+    return _relay_rod(*(points[name] for name in RELAY_POINTS), *inner)
+
+
+@_once
+def _relay_rod(
+    pitman_pivot: XY, pitman: XY, idler_pivot: XY, idler: XY, left: XY, right: XY
+) -> Outlines:
     yield "relay", shapes.tube(idler, pitman, RELAY)
     yield "relay light", shapes.sheen(idler, pitman, RELAY)
     start, end = np.array(idler), np.array(pitman)
     way = end - start
     size = float(way @ way)
-    for stand in both.values():
-        inner = np.array(stand.points[names.TIE_INNER])
+    for inner in (np.array(left), np.array(right)):
         share = min(max(float((inner - start) @ way) / size, 0.0), 1.0) if size > 1e-6 else 0.0
         yield "relay", shapes.tube(start + share * way, inner, 11.0)
-    for end_name, pivot in (
-        (names.PITMAN_END, names.PITMAN_PIVOT),
-        (names.IDLER_END, names.IDLER_PIVOT),
-    ):
-        yield "relay", shapes.tube(points[pivot], points[end_name], 19.0, 13.0)
-        yield "eye", shapes.circle(points[pivot], 20.0)
+    for arm_end, pivot in ((pitman, pitman_pivot), (idler, idler_pivot)):
+        yield "relay", shapes.tube(pivot, arm_end, 19.0, 13.0)
+        yield "eye", shapes.circle(pivot, 20.0)

@@ -8,6 +8,7 @@ stands still and the wheels move.
 
 from __future__ import annotations
 
+import math
 from dataclasses import dataclass
 
 import numpy as np
@@ -21,6 +22,9 @@ from geometry.solution import CornerState, Solution
 from geometry.steering import relay_ends
 
 XY = tuple[float, float]
+
+_STILL = 1e-9
+"""Nearer than this, mm, to where it was measured a point stands there."""
 
 BODY_POINTS = frozenset({
     names.LOWER_INNER,
@@ -77,9 +81,9 @@ def standing(solution: Solution, name: SideName, face: Face = FRONT) -> Standing
     measured = {key: face.place(sign, p) for key, p in state.side.points.items()}
     now = pose_points(state.side, state.corner, state.now)
     moved = {
-        key: face.seen(sign, place[:, 0])
+        key: _settled(face.seen(sign, place[:, 0]), measured[key])
         for key, place in now.items()
-        if bool(np.isfinite(place[:, 0]).all())
+        if math.isfinite(float(place[:, 0].sum()))
     }
     meets = bool(state.now.assembles[0])
     poses = state.now if meets else state.ride
@@ -137,9 +141,19 @@ def nail_places(solution: Solution, face: Face = FRONT) -> dict[tuple[SideName, 
     }
 
 
+def _settled(place: XY, measured: XY) -> XY:
+    """A place, or the measured one that it misses only by the last digits of a solve.
+
+    So what stands still is known to, number for number, and is drawn once.
+    """
+    near = abs(place[0] - measured[0]) < _STILL and abs(place[1] - measured[1]) < _STILL
+    return measured if near else place
+
+
 def _unit(way: XY) -> XY | None:
-    size = float(np.hypot(*way))
-    return (way[0] / size, way[1] / size) if size > 1e-9 else None
+    """A direction as a unit one, without a solve's last digits; None if it has none."""
+    size = math.hypot(*way)
+    return (round(way[0] / size, 13), round(way[1] / size, 13)) if size > 1e-9 else None
 
 
 def array(*places: XY) -> Array:
