@@ -24,6 +24,7 @@ from PySide6.QtGui import (
 )
 from PySide6.QtWidgets import (
     QDialog,
+    QGraphicsItem,
     QGraphicsPathItem,
     QGraphicsRectItem,
     QGridLayout,
@@ -44,6 +45,9 @@ SHOWN = ("toe", "camber", "roll center", "track")
 COLORS = {"toe": "#D55E00", "camber": "#0072B2", "roll center": "#009E73", "track": "#8B3A6F"}
 FOUND_COLOR = "#8C8A84"
 BAND_COLOR = "#E4EFE4"
+
+_KEPT = QGraphicsItem.CacheMode.DeviceCoordinateCache
+"""For what only changes with the range: a picture of it is kept and not painted anew."""
 
 
 def _pen(color: str, width: float, style: Qt.PenStyle = Qt.PenStyle.SolidLine) -> QPen:
@@ -79,6 +83,8 @@ class _Plot(pg.PlotWidget):
         self.hideButtons()
         self.setMouseEnabled(False, False)
         self.setViewportUpdateMode(self.ViewportUpdateMode.BoundingRectViewportUpdate)
+        # The card's color covers it all, so that nothing needs to be painted beneath.
+        self.viewport().setAttribute(Qt.WidgetAttribute.WA_OpaquePaintEvent)
         self.setSizePolicy(QSizePolicy.Policy.Expanding, QSizePolicy.Policy.Ignored)
         self.setMinimumHeight(110)
 
@@ -132,6 +138,7 @@ class CurvePlot(QWidget):
             axis.setStyle(tickLength=-3)
             axis.setPen(QPen(QColor(theme.LINE)))
             axis.setTextPen(QPen(QColor(theme.QUIET)))
+            axis.setCacheMode(_KEPT)
         self._band = QGraphicsRectItem()
         self._band.setPen(QPen(Qt.PenStyle.NoPen))
         self._band.setBrush(QColor(BAND_COLOR))

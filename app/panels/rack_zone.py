@@ -49,8 +49,14 @@ class FloorZones(QObject):
         super().__init__(floor)
         self._document, self._floor = document, floor
         self.shown = True
+        self._made_of: tuple[object, ...] | None = None
         document.solved.connect(self.refresh)
-        document.opened.connect(self.refresh)
+        document.opened.connect(self._opened)
+        self.refresh()
+
+    def _opened(self) -> None:
+        # The floor is swept when another car comes.
+        self._made_of = None
         self.refresh()
 
     def show_zones(self, on: bool) -> None:
@@ -59,6 +65,11 @@ class FloorZones(QObject):
 
     def refresh(self) -> None:
         solution = self._document.shown_solution
+        # Where the wheels and the rack stand now makes no difference to a zone.
+        made_of = solution.layout, solution.span, self.shown
+        if made_of == self._made_of:
+            return
+        self._made_of = made_of
         areas: dict[SideName, BaseGeometry | None] = {}
         for side in SIDES:
             if not self.shown:

@@ -16,6 +16,10 @@ from app.panels.card import Card
 from geometry.layout import SideName
 from geometry.readouts import READOUTS, Readout, change_text, format_readout, unit_words
 
+_HEADS = ["", "planned", "found", "change"]
+_AIR = 10
+"""Room beside the letters of a figure, pixels."""
+
 
 class ReadoutsPanel(Card):
     """A table of figures; a second and third column appear when the job holds a car as found."""
@@ -29,13 +33,17 @@ class ReadoutsPanel(Card):
         self.table.setEditTriggers(QAbstractItemView.EditTrigger.NoEditTriggers)
         self.table.setSelectionMode(QAbstractItemView.SelectionMode.SingleSelection)
         self.table.verticalHeader().hide()
-        self.table.setHorizontalHeaderLabels(["", "planned", "found", "change"])
+        self.table.setHorizontalHeaderLabels(_HEADS)
         header = self.table.horizontalHeader()
-        header.setSectionResizeMode(QHeaderView.ResizeMode.ResizeToContents)
+        # Measured by hand: a header that follows its contents measures all of them again
+        # with every figure that changes, a quarter of a millisecond each.
+        header.setSectionResizeMode(QHeaderView.ResizeMode.Fixed)
         header.setSectionResizeMode(0, QHeaderView.ResizeMode.Stretch)
         header.setDefaultAlignment(Qt.AlignmentFlag.AlignRight)
         self.body.addWidget(self.table)
         self._rows: list[tuple[Readout, SideName]] = []
+        self._units = document.units
+        self._widths = [0] * 4
         self._items: dict[tuple[int, int], QTableWidgetItem] = {}
         self.table.setTabKeyNavigation(False)
         document.solved.connect(self.refresh)
@@ -65,7 +73,7 @@ class ReadoutsPanel(Card):
     def refresh(self) -> None:
         """Show the figures of the document's solution."""
         rows = self._wanted()
-        if rows != self._rows:
+        if rows != self._rows or self._units != self._document.units:
             self._build(rows)
         planned, found = self._document.solution, self._document.found_solution
         units = self._document.units
@@ -74,11 +82,6 @@ class ReadoutsPanel(Card):
                 self.table.setColumnHidden(column, found is None)
         for row, (readout, side) in enumerate(rows):
             value = readout.read(planned, side)
-            unit = unit_words(readout.unit, units)
-            sides = {s for r, s in rows if r is readout}
-            where = f", {side}" if len(sides) > 1 else ""
-            label = readout.label + where + (f", {unit}" if unit else "")
-            self._put(row, 0, label)
             self._put(row, 1, format_readout(readout.unit, value, units))
             tip = readout.tip if value is not None else readout.missing
             # Every set is a repaint of its own; most frames change no tip.
@@ -91,11 +94,11 @@ class ReadoutsPanel(Card):
                 self._put(row, 3, change_text(readout.unit, was, value, units))
 
     def _build(self, rows: list[tuple[Readout, SideName]]) -> None:
-        self._rows = rows
+        self._rows, self._units = rows, self._document.units
         self.table.setRowCount(len(rows))
-        for row in range(len(rows)):
+        for row, (readout, side) in enumerate(rows):
             for column in range(4):
-                item = QTableWidgetItem()
+                item = QTableWidgetItem("" if column else self._label(readout, side))
                 if column:
                     item.setTextAlignment(
                         Qt.AlignmentFlag.AlignRight | Qt.AlignmentFlag.AlignVCenter
@@ -104,12 +107,30 @@ class ReadoutsPanel(Card):
                 self._items[row, column] = item
         self._size()
 
+    def _label(self, readout: Readout, side: SideName) -> str:
+        unit = unit_words(readout.unit, self._units)
+        sides = {s for r, s in self._rows if r is readout}
+        where = f", {side}" if len(sides) > 1 else ""
+        return readout.label + where + (f", {unit}" if unit else "")
+
     def _size(self) -> None:
-        """Rows as high as the letters need."""
+        """Rows as high as the letters need, columns as wide as what stands in them."""
         height = self.table.fontMetrics().height() + 5
         self.table.verticalHeader().setMinimumSectionSize(1)
         self.table.verticalHeader().setDefaultSectionSize(height)
         self.table.horizontalHeader().setFixedHeight(height)
+        self._widths = [0] * 4
+        for column in range(1, 4):
+            self._widen(column, _HEADS[column])
+            for row in range(len(self._rows)):
+                self._widen(column, self._items[row, column].text())
+
+    def _widen(self, column: int, text: str) -> None:
+        """Make room for a text; a column that is wide enough stays as it is."""
+        width = self.table.fontMetrics().horizontalAdvance(text) + _AIR
+        if width > self._widths[column]:
+            self._widths[column] = width
+            self.table.setColumnWidth(column, width)
 
     def changeEvent(self, event: QEvent) -> None:
         super().changeEvent(event)
@@ -120,6 +141,7 @@ class ReadoutsPanel(Card):
         item = self._items[row, column]
         if item.text() != text:
             item.setText(text)
+            self._widen(column, text)
 
     def text_of(self, key: str, side: SideName = "left", column: int = 1) -> str:
         """What stands in the table for a figure (for tests and the clipboard)."""
