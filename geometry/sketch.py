@@ -30,7 +30,8 @@ class Brief:
     track is between the contact points. ``lower_up`` and ``upper_up`` are the ball joints'
     heights, ``frame_half`` where the lower arm's bushing can be fixed, over.
     ``upper_frame_half`` is the same for the upper arm; None lets the program choose between
-    the frame and what leaves the arm LEAST_ARM. ``steering_arm`` is how far behind the
+    the frame and what leaves the arm LEAST_ARM. ``longest_lower`` limits the lower arm's length
+    from pivot to ball joint; None for no limit. ``steering_arm`` is how far behind the
     kingpin axis the outer tie-rod end stands (negative: ahead). ``camber_gain`` is lean-in
     per travel, rad/mm.
     """
@@ -48,6 +49,7 @@ class Brief:
     roll_center: float
     camber_gain: float
     upper_frame_half: float | None = None
+    longest_lower: float | None = None
     wheelbase: float | None = None
     static_camber: float = 0.0
     static_toe: float = 0.0
@@ -73,7 +75,7 @@ def sketch(brief: Brief) -> Sketch:
     _check(brief)
     knuckle = _knuckle(brief)
     center = _instant_center(brief)
-    lower = _inner(knuckle[names.LOWER_BALL], center, brief.frame_half)
+    lower = _lower_inner(brief, knuckle[names.LOWER_BALL], center)
     best: tuple[float, Layout] | None = None
     for over in _upper_overs(brief, knuckle[names.UPPER_BALL]):
         upper = _inner(knuckle[names.UPPER_BALL], center, over)
@@ -92,6 +94,11 @@ def sketch(brief: Brief) -> Sketch:
 
 def _check(brief: Brief) -> None:
     half = 0.5 * brief.track
+    figures = [v for v in vars(brief).values() if isinstance(v, float)]
+    if not all(math.isfinite(v) for v in (*figures, brief.tire.radius)):
+        raise LayoutError("Every figure has to be a plain number.")
+    if half <= 0.0 or brief.tire.radius <= 0.0:
+        raise LayoutError("Track and tire radius have to be more than nothing.")
     if brief.upper_up - brief.lower_up < 50.0:
         raise LayoutError("The upper ball joint has to stand well above the lower one.")
     if not brief.lower_up > 0.0:
@@ -101,6 +108,13 @@ def _check(brief: Brief) -> None:
         raise LayoutError("The frame is so wide that no lower arm fits between it and the wheel.")
     if brief.camber_gain <= 0.0:
         raise LayoutError("The camber gain has to be more than nothing for arms that meet inboard.")
+    if half - 1.0 / brief.camber_gain > lower_over - LEAST_ARM:
+        raise LayoutError(
+            "The camber gain is so high that the arms would meet right at the ball joints. Ask for "
+            "less."
+        )
+    if brief.longest_lower is not None and brief.longest_lower < LEAST_ARM:
+        raise LayoutError("The longest lower arm wanted is shorter than any that is proposed.")
     if abs(brief.steering_arm) < 25.0:
         raise LayoutError("The steering arm has to be longer than that to steer by.")
 
@@ -146,6 +160,16 @@ def _inner(ball: Point, center: tuple[float, float], over: float) -> Point:
     """The inner pivot at ``over`` on the line from a ball joint to the instant center."""
     slope = (ball.up - center[1]) / (ball.over - center[0])
     return Point(over, ball.up - slope * (ball.over - over), ball.fore)
+
+
+def _lower_inner(brief: Brief, ball: Point, center: tuple[float, float]) -> Point:
+    """The lower inner pivot at the frame, or as near to it as the longest arm goes."""
+    at_frame = _inner(ball, center, brief.frame_half)
+    length = math.dist(at_frame, ball)
+    if brief.longest_lower is None or length <= brief.longest_lower:
+        return at_frame
+    reach = (ball.over - brief.frame_half) * brief.longest_lower / length
+    return _inner(ball, center, ball.over - reach)
 
 
 def _upper_overs(brief: Brief, ball: Point) -> list[float]:
@@ -223,9 +247,16 @@ def _report(brief: Brief, car: Layout) -> tuple[tuple[str, ...], tuple[str, ...]
         pivot, ball = car.left[f"{arm} inner pivot"], car.left[f"{arm} ball joint"]
         length = math.dist(pivot, ball)
         judge(
-            length >= LEAST_ARM - 0.5,
+            length >= LEAST_ARM - 0.5 and pivot.up > 0.0,
             f"{arm.capitalize()} arm {words.tape(length)} long, its bushing "
             f"{words.tape(pivot.over)} over and {words.signed_tape(pivot.up)} up.",
+        )
+    bracket = car.left[names.LOWER_INNER].over - brief.frame_half
+    if words.counts(bracket):
+        judge(
+            False,
+            f"The lower arm ends {words.tape(bracket)} short of the frame: it needs a bracket that "
+            "long, or a wider frame.",
         )
     tie = car.left[names.TIE_INNER]
     judge(

@@ -73,11 +73,29 @@ def test_a_front_steer_arm_leans_outboard():
         ({"camber_gain": 0.0}, "more than nothing"),
         ({"steering_arm": 5.0}, "longer"),
         ({"lower_up": -10.0}, "above the floor"),
+        ({"camber_gain": 1.0 / 200.0}, "right at the ball joints"),
+        ({"camber_gain": math.nan}, "plain number"),
+        ({"frame_half": math.inf}, "plain number"),
+        ({"track": 0.0, "frame_half": -900.0}, "more than nothing"),
+        ({"tire": Tire(0.0)}, "more than nothing"),
+        ({"longest_lower": 60.0}, "shorter than any"),
     ],
 )
 def test_a_brief_that_contradicts_itself_is_refused_in_words(change, words):
     with pytest.raises(LayoutError, match=words):
         sketch(replace(BRIEF, **change))
+
+
+def test_a_lower_arm_is_no_longer_than_wanted_and_the_bracket_is_said():
+    full = sketch(BRIEF).layout.left
+    length = math.dist(full["lower inner pivot"], full["lower ball joint"])
+    made = sketch(replace(BRIEF, longest_lower=300.0))
+    short = made.layout.left
+    assert math.dist(short["lower inner pivot"], short["lower ball joint"]) == pytest.approx(300.0)
+    assert any("short of the frame" in said for said in made.missed)
+    # Still on the line to the same instant center.
+    assert solve(made.layout).ride_roll_center[1] == pytest.approx(60.0, abs=0.1)
+    assert sketch(replace(BRIEF, longest_lower=length + 1.0)).layout == sketch(BRIEF).layout
 
 
 @settings(max_examples=25, deadline=None)
