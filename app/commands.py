@@ -104,7 +104,7 @@ class Commands(QObject):
         self.recent = menu.addMenu("Open &recent")
         self.recent.setToolTipsVisible(True)
         self.recent.aboutToShow.connect(self._fill_recent)
-        self.add(menu, "take back", "&Work to take back…", self.take_back)
+        self.add(menu, "take back", "Wor&k to take back…", self.take_back)
         menu.aboutToShow.connect(self._look_for_kept_work)
         menu.addSeparator()
         self.add(menu, "save", "&Save", self.save, standard.Save, icon="save")

@@ -54,6 +54,7 @@ class ViewCommands(QObject):
         add(menu, "last panel", "L&ast panel", partial(self._window.walk_panels, -1), "Shift+F6")
         dark.setChecked(settings.get_bool("dark floor", False))
         curves.setChecked(settings.get_bool("curves shown", True))
+        self._curves(curves.isChecked())
         now = settings.get_int("text size", 100, 100, 200)
         nearest = min(TEXT_SIZES, key=lambda percent: abs(percent - now))
         commands.check(f"text {nearest}", True)
