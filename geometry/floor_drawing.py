@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator
+from collections.abc import Callable, Iterable, Iterator
 from dataclasses import dataclass
 
 import numpy as np
@@ -11,8 +11,9 @@ from geometry import floor_colors as colors
 from geometry import floor_signs as signs
 from geometry.bounds import Bounds, Place
 from geometry.drawing import Drawing, Item, Line, Polygon, Polyline, Style, Text
+from geometry.faces import FRONT, Face
 from geometry.floor_words import capital, center_words, pose_words, reach_words, roll_words
-from geometry.front_parts import OPEN_ROLES, Part, Role, car_parts, side_parts
+from geometry.front_parts import OPEN_ROLES, ROLES, Part, Role, car_parts, side_parts
 from geometry.front_strings import inner_pivot_places, instant_center, strings, tire_floor
 from geometry.labels import Box, Label, place_labels
 from geometry.layout import SIDES, SideName
@@ -21,7 +22,7 @@ from geometry.linkage import Array
 from geometry.pages import LETTER, Page, Pages, PageSize
 from geometry.shapes import clipped
 from geometry.solution import Solution
-from geometry.standing import XY, Standing, relay_standing, sign_of, standing
+from geometry.standing import XY, Standing, nail_places, relay_standing, sign_of, standing
 from geometry.tape import marks
 
 _SCALES = (1, 2, 3, 4, 5, 6, 8, 10, 12, 15, 16, 20, 25, 30, 40, 50, 75, 100, 200, 500, 1000)
@@ -39,7 +40,7 @@ _BARS = {"rim": 5.0, "spring": 11.0, "groove": 1.0}
 
 
 @dataclass(frozen=True)
-class _Sheet:
+class Sheet:
     """A floor laid on paper: what it shows (mm on the floor) and how it is scaled."""
 
     shown: Bounds
@@ -76,34 +77,39 @@ def floor_drawing(
     items: list[Item] = list(_ground(sheet, both, solution))
     if found is not None and found.layout != solution.layout:
         outline = _parts(found, {side: standing(found, side) for side in SIDES})
-        items += _pale(sheet, outline)
-    items += _no_go(sheet, solution)
+        items += pale(sheet, outline)
+    items += no_go(sheet, solution)
     broken = {side for side in SIDES if not both[side].meets}
-    items += _solid(sheet, parts, broken)
+    items += solid(sheet, parts, broken)
     items += _strings(sheet, solution, both)
     items += _signs(sheet, solution, both)
-    items += _tags(sheet, solution, both)
-    items += _tapes(sheet, solution)
-    items += _caption(sheet, solution)
-    area = sheet.area
-    frame = Bounds(area.left - _UPRIGHT, area.bottom - _TAPE - _CAPTION, area.right, area.top)
-    return Drawing(tuple(items), frame)
+    items += placed_tags(sheet, _tag_words(solution, both), nail_places(solution).values())
+    items += tapes(sheet, solution)
+    items += caption(sheet, solution)
+    return Drawing(tuple(items), frame_of(sheet))
 
 
 def floor_pages(
     solution: Solution, found: Solution | None = None, size: PageSize = LETTER
 ) -> Pages:
     """The front view on one sheet lying on its long side."""
-    sheet = size.landscape
+    return one_page(
+        lambda width, height: floor_drawing(solution, found, width, height),
+        solution.layout.title,
+        size.landscape,
+    )
+
+
+def one_page(make: Callable[[float, float], Drawing], title: str, sheet: PageSize) -> Pages:
+    """A drawing made to fit a sheet's printable width and height, in its middle."""
     room = Page(sheet).printable
-    drawing = floor_drawing(solution, found, room.width, room.height)
+    drawing = make(room.width, room.height)
     frame = drawing.shown()
     at = (
         room.left + 0.5 * (room.width - frame.width) - frame.left,
         room.bottom + 0.5 * (room.height - frame.height) - frame.bottom,
     )
     clip = Bounds(frame.left + at[0], frame.bottom + at[1], frame.right + at[0], frame.top + at[1])
-    title = solution.layout.title
     return Pages((Page(sheet, title=title).with_placed(drawing, at, clip),), title)
 
 
@@ -115,23 +121,34 @@ def _parts(solution: Solution, both: dict[SideName, Standing]) -> list[Part]:
 def _sheet(
     solution: Solution, parts: list[Part], both: dict[SideName, Standing],
     width: float, height: float,
-) -> _Sheet:
+) -> Sheet:
     """Room for the whole car as it stands, its centerline in the middle."""
     contacts = np.array([stand.contact for stand in both.values()])
     corners = np.vstack([*(part.outline for part in parts), contacts])
     out = float(np.abs(corners[:, 0]).max()) + 40.0
     top = max(float(corners[:, 1].max()), solution.layout.cg_height or 0.0) + 60.0
     low = min(float(corners[:, 1].min()), 0.0) - 60.0
+    return sheet_for(out, low, top, width, height)
+
+
+def sheet_for(out: float, low: float, top: float, width: float, height: float) -> Sheet:
+    """A floor from ``low`` to ``top`` and ``out`` mm each way, at a round scale on paper."""
     room = width - _UPRIGHT, height - _TAPE - _CAPTION
     need = max(2.0 * out / room[0], (top - low) / room[1])
     scale = float(next((s for s in _SCALES if s >= need), _SCALES[-1]))
     # What the round scale leaves over goes to floor at the sides.
     out = max(out, 0.5 * room[0] * scale)
     shown = Bounds(-out, low, out, top)
-    return _Sheet(shown, scale, (_UPRIGHT + out / scale, _TAPE + _CAPTION - low / scale))
+    return Sheet(shown, scale, (_UPRIGHT + out / scale, _TAPE + _CAPTION - low / scale))
 
 
-def _ground(sheet: _Sheet, both: dict[SideName, Standing], solution: Solution) -> Iterator[Item]:
+def frame_of(sheet: Sheet) -> Bounds:
+    """What a drawing shows: the floor with its tapes and its caption."""
+    area = sheet.area
+    return Bounds(area.left - _UPRIGHT, area.bottom - _TAPE - _CAPTION, area.right, area.top)
+
+
+def _ground(sheet: Sheet, both: dict[SideName, Standing], solution: Solution) -> Iterator[Item]:
     """Floor line, centerline and, away from ride height, the floor the tires stand on."""
     area, zero = sheet.area, sheet.place((0.0, 0.0))
     chalk = Style(colors.CHALK, 0.4, layer="chalk")
@@ -143,26 +160,29 @@ def _ground(sheet: _Sheet, both: dict[SideName, Standing], solution: Solution) -
         yield Line(sheet.place(floor[0]), sheet.place(floor[1]), style)
 
 
-def _pale(sheet: _Sheet, parts: list[Part]) -> Iterator[Item]:
+def pale(sheet: Sheet, parts: list[Part]) -> Iterator[Item]:
     style = Style("#A9A59C", 0.3, (2.2, 0.5), layer="as found")
     for part in parts:
-        if part.role in ("tire", "arm", "knuckle", "tie", "strut", "rack", "relay"):
+        if part.role in ("tire", "arm", "low arm", "knuckle", "tie", "strut", "rack", "relay"):
             yield Polyline(sheet.places(part.outline), True, style)
 
 
-def _no_go(sheet: _Sheet, solution: Solution) -> Iterator[Item]:
+def no_go(sheet: Sheet, solution: Solution, face: Face = FRONT) -> Iterator[Item]:
+    """The no-go shapes of one floor."""
     style = Style(colors.NO_GO, 0.35, fill="#F3E0DA", layer="no-go")
     for shape in solution.layout.no_go:
-        if shape.view != "front" or len(shape.outline) < 3:
+        if shape.view != face.name or len(shape.outline) < 3:
             continue
         for side in SIDES if shape.side is None else (shape.side,):
-            outline = np.array(shape.outline, dtype=float) * (sign_of(side), 1.0)
+            outline = np.array(shape.outline, dtype=float) * (sign_of(side), face.way)
             yield Polygon(sheet.places(outline), style=style)
 
 
-def _solid(sheet: _Sheet, parts: list[Part], broken: set[SideName]) -> Iterator[Item]:
+def solid(
+    sheet: Sheet, parts: list[Part], broken: set[SideName], roles: tuple[Role, ...] = ROLES
+) -> Iterator[Item]:
     """The parts from back to front; sides whose parts can't meet are only outlined."""
-    for part in sorted(parts, key=lambda p: list(colors.PARTS).index(p.role)):
+    for part in sorted(parts, key=lambda p: roles.index(p.role)):
         fill, edge = colors.PARTS[part.role]
         layer = _LAYERS.get(part.role, "arms")
         places = sheet.places(part.outline)
@@ -180,7 +200,7 @@ def _solid(sheet: _Sheet, parts: list[Part], broken: set[SideName]) -> Iterator[
 
 
 def _strings(
-    sheet: _Sheet, solution: Solution, both: dict[SideName, Standing]
+    sheet: Sheet, solution: Solution, both: dict[SideName, Standing]
 ) -> Iterator[Item]:
     for string in strings(solution, both):
         part = clipped(string.start, string.end, sheet.shown)
@@ -189,12 +209,12 @@ def _strings(
             yield Line(sheet.place(part[:2]), sheet.place(part[2:]), style)
 
 
-def _inside(sheet: _Sheet, at: XY) -> bool:
+def inside(sheet: Sheet, at: XY) -> bool:
     box = sheet.shown
     return box.left <= at[0] <= box.right and box.bottom <= at[1] <= box.top
 
 
-def _signs(sheet: _Sheet, solution: Solution, both: dict[SideName, Standing]) -> Iterator[Item]:
+def _signs(sheet: Sheet, solution: Solution, both: dict[SideName, Standing]) -> Iterator[Item]:
     """Nails and construction points that lie inside."""
     relay = relay_standing(solution)
     for side, name in solution.layout.nails():
@@ -204,13 +224,13 @@ def _signs(sheet: _Sheet, solution: Solution, both: dict[SideName, Standing]) ->
         if not stand.meets:
             continue
         for kind, place in inner_pivot_places(solution, stand).items():
-            if _inside(sheet, place):
+            if inside(sheet, place):
                 yield from signs.pivot(sheet.place(place), kind)
         center = instant_center(solution, side)
-        if center is not None and not center.at_infinity and _inside(sheet, center.place):
+        if center is not None and not center.at_infinity and inside(sheet, center.place):
             yield from signs.plumb_bob(sheet.place(center.place))
     roll = solution.roll_center_place
-    if roll is not None and solution.assembles and _inside(sheet, roll):
+    if roll is not None and solution.assembles and inside(sheet, roll):
         yield from signs.ring_on_bar(sheet.place(roll))
     high = solution.layout.cg_height
     if high is not None:
@@ -235,13 +255,16 @@ def _tag_words(
             yield f"{capital(side)} instant center", words, center.seen
 
 
-def _tags(sheet: _Sheet, solution: Solution, both: dict[SideName, Standing]) -> Iterator[Item]:
+def placed_tags(
+    sheet: Sheet, words_at: Iterable[tuple[str, str, XY]], keep_clear: Iterable[XY]
+) -> Iterator[Item]:
+    """Tags (title, detail, place), none over another; those off the paper at its edge."""
     area = sheet.area
     box = Box(area.left, area.bottom, area.width, area.height).grown(-1.0)
     labels: list[Label] = []
     words: dict[str, tuple[str, str, Place | None]] = {}
-    for index, (title, detail, at) in enumerate(_tag_words(solution, both)):
-        outside = not _inside(sheet, at)
+    for index, (title, detail, at) in enumerate(words_at):
+        outside = not inside(sheet, at)
         if outside:
             title = f"{_way(sheet, at)} {title}"
         anchor = sheet.place(at)
@@ -249,9 +272,7 @@ def _tags(sheet: _Sheet, solution: Solution, both: dict[SideName, Standing]) -> 
             Label(str(index), anchor, *signs.tag_size(title, detail), 2.6, outside)
         )
         words[str(index)] = (title, detail, None if outside else anchor)
-    nails = [place for stand in both.values() for place in stand.points.values()]
-    nails += relay_standing(solution).values()
-    soft = [Box(*sheet.place(place), 0.0, 0.0).grown(1.6) for place in nails]
+    soft = [Box(*sheet.place(place), 0.0, 0.0).grown(1.6) for place in keep_clear]
     for key, placed in place_labels(labels, box, soft).items():
         title, detail, beside = words[key]
         if beside is not None:
@@ -259,7 +280,7 @@ def _tags(sheet: _Sheet, solution: Solution, both: dict[SideName, Standing]) -> 
         yield from signs.tag(placed, title, detail)
 
 
-def _way(sheet: _Sheet, at: XY) -> str:
+def _way(sheet: Sheet, at: XY) -> str:
     """An arrow toward a place off the paper."""
     box = sheet.shown
     if at[0] < box.left:
@@ -269,8 +290,11 @@ def _way(sheet: _Sheet, at: XY) -> str:
     return "↓" if at[1] < box.bottom else "↑"
 
 
-def _tapes(sheet: _Sheet, solution: Solution) -> Iterator[Item]:
-    """The tapes along the lower and the left edge, over whatever runs out there."""
+def tapes(sheet: Sheet, solution: Solution, way: float = 1.0) -> Iterator[Item]:
+    """The tapes along the lower and the left edge, over whatever runs out there.
+
+    ``way`` is +1 where the upright tape's measure grows up the paper, -1 where down.
+    """
     area, unit = sheet.area, solution.layout.units
     fill = Style(colors.TAPE_EDGE, 0.2, fill=colors.TAPE, layer="tapes")
     lower = Bounds(area.left - _UPRIGHT, area.bottom - _TAPE, area.right, area.bottom)
@@ -290,11 +314,11 @@ def _tapes(sheet: _Sheet, solution: Solution) -> Iterator[Item]:
         ink = Style(colors.TAPE_RED if mark.round else colors.TAPE_INK, 0.15, layer="tapes")
         yield Line((area.left, y), (area.left - 0.6 - 1.6 * mark.size, y), ink)
         if mark.numeral and area.bottom + 2.0 < y < area.top - 2.0:
-            numeral = f"−{mark.numeral}" if mark.at < 0.0 else mark.numeral
+            numeral = f"−{mark.numeral}" if way * mark.at < 0.0 else mark.numeral
             yield Text((area.left - 2.9, y), numeral, 1.8, "right", "middle", style=ink)
 
 
-def _caption(sheet: _Sheet, solution: Solution) -> Iterator[Item]:
+def caption(sheet: Sheet, solution: Solution) -> Iterator[Item]:
     area = sheet.area
     layout = solution.layout
     ink = Style(colors.INK, layer="text")

@@ -15,7 +15,8 @@ import numpy as np
 from geometry import layout as names
 from geometry.ackermann import kingpin_on_floor
 from geometry.layout import SIDES, SideName
-from geometry.plan_parts import arm_bushings
+from geometry.linkage import Array
+from geometry.plan_parts import arm_bushings, tire_above
 from geometry.solution import Solution
 from geometry.standing import XY, Standing
 from geometry.steered_now import SteeredNow, steered_now
@@ -183,4 +184,20 @@ def _turn(both: dict[SideName, Standing], marks: PlanMarks) -> list[PlanString]:
         toward = 1.0 if angle > 0.0 else -1.0
         way = toward * math.cos(angle), abs(math.sin(angle))
         out.append(PlanString(side, "turn", (x, y), (x + reach * way[0], y + reach * way[1])))
+    return out
+
+
+def rear_tires(
+    solution: Solution, both: dict[SideName, Standing], marks: PlanMarks
+) -> list[Array]:
+    """The rear tires as the front ones are made, where the rear track is known."""
+    if marks.rear is None or solution.layout.loads.rear_track is None:
+        return []
+    half = rear_half_track(solution, both)
+    out = []
+    for stand in both.values():
+        tire = stand.state.side.tire
+        if tire.radius > 1.0:
+            middle = np.array([stand.sign * half, marks.rear[1]])
+            out.append(tire_above(tire.radius, tire.width) + middle)
     return out

@@ -261,6 +261,10 @@ class PlanView:
                 found["right"] = last
         return found
 
+    def stop(self, turn: SideName) -> int | None:
+        """The index of the last rack that meets on the way to a turn's stop; None without one."""
+        return self._stops.get(turn)
+
     @cached_property
     def _cars(self) -> SteeredCars:
         return SteeredCars([self.layout], self.lock, dict(self.travel))

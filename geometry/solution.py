@@ -9,7 +9,7 @@ from __future__ import annotations
 from collections.abc import Sequence
 from dataclasses import dataclass
 from functools import cached_property
-from typing import Any
+from typing import TYPE_CHECKING, Any
 
 import numpy as np
 
@@ -27,6 +27,9 @@ from geometry.inner_pivot import (
 from geometry.layout import SIDES, Layout, Side, SideName
 from geometry.linkage import Array
 from geometry.steering import inner_shifts
+
+if TYPE_CHECKING:
+    from geometry.roll import RolledPose
 
 SWEEP_STEPS = 81
 PIVOT_KINDS = ("as is", "string rule", "curvature center", "best fit")
@@ -82,13 +85,18 @@ class CornerState:
 
 @dataclass(frozen=True)
 class Solution:
-    """A solved car. Travel and rack in mm, span the half travel of the sweep."""
+    """A solved car. Travel and rack in mm, span the half travel of the sweep.
+
+    ``road`` is the pose on the one floor under both tires, where that is tilted against the
+    body; contacts, scrub radius and roll center in the chosen pose are then taken on it.
+    """
 
     layout: Layout
     travel: dict[SideName, float]
     rack: float
     span: float
     sides: dict[SideName, CornerState]
+    road: RolledPose | None = None
 
     @property
     def left(self) -> CornerState:

@@ -24,6 +24,7 @@ def check(subject: Subject) -> Iterator[Finding]:
     relay = subject.layout.steering
     if not isinstance(relay, RelayRod):
         return
+    yield from _no_length(subject, relay)
     longer = _length(relay.idler_pivot, relay.idler_end) - _length(
         relay.pitman_pivot, relay.pitman_end
     )
@@ -68,6 +69,28 @@ def check(subject: Subject) -> Iterator[Finding]:
 def _length(pivot: Point, end: Point) -> float:
     """An arm's length in plan, mm."""
     return math.hypot(end.over - pivot.over, end.fore - pivot.fore)
+
+
+def _no_length(subject: Subject, relay: RelayRod) -> Iterator[Finding]:
+    """A pitman or idler arm whose two points are one place steers nothing."""
+    limit = subject.limit("point spacing")
+    arms = ((names.PITMAN_PIVOT, names.PITMAN_END), (names.IDLER_PIVOT, names.IDLER_END))
+    for pivot, end in arms:
+        gap = math.hypot(relay[end].over - relay[pivot].over, relay[end].fore - relay[pivot].fore)
+        if gap < limit:
+            arm = pivot.removesuffix(" pivot")
+            yield subject.finding(
+                "points-coincide",
+                "wrong",
+                f"The {arm} has no length: its pivot and its end are in the same place "
+                "seen from above.",
+                f"They are {subject.words.fine(gap)} apart, and an arm without length can't "
+                "move the relay rod; one of them was measured or typed wrong.",
+                figure=gap,
+                key="point spacing",
+                points=(pivot, end),
+                whole_car=True,
+            )
 
 
 def _matched(relay: RelayRod) -> RelayRod:
