@@ -29,6 +29,7 @@ from geometry.sheet_writing import measure_sheet_to_text, starting_sheet
 from geometry.text_file import write_text_file
 
 if TYPE_CHECKING:
+    from app.floor.view import FloorView
     from app.window import MainWindow
 
 
@@ -41,6 +42,7 @@ class Commands(QObject):
         self.document = window.document
         self.actions: dict[str, QAction] = {}
         self._checking = False
+        self._on_floor: list[QAction] = []
         self._file_menu()
         self._edit_menu()
         self._view_menu()
@@ -80,10 +82,16 @@ class Commands(QObject):
             action.triggered.connect(lambda _checked=False: act())
         if on_floor:
             action.setShortcutContext(Qt.ShortcutContext.WidgetWithChildrenShortcut)
+            self._on_floor.append(action)
             self.window.floor.addAction(action)
         menu.addAction(action)
         self.actions[name] = action
         return action
+
+    def attach(self, floor: FloorView) -> None:
+        """Let the floor's own keys count on another floor too, and follow its tape."""
+        floor.addActions(self._on_floor)
+        floor.tape_mode_changed.connect(self.actions["tape"].setChecked)
 
     def _file_menu(self) -> None:
         standard = QKeySequence.StandardKey

@@ -18,6 +18,7 @@ from app.history import History
 from app.home_file import FileMark, HomeFile
 from geometry.findings import SEVERITIES, Finding, findings
 from geometry.layout import Job, Layout, Point, SideName, UnitName
+from geometry.road import MOST_ROLL, on_road, roll_travel
 from geometry.solution import Solution, solve
 
 DEFAULT_SPAN = {"in": 76.2, "mm": 75.0}
@@ -43,6 +44,7 @@ class Document(QObject):
         self.file.settle(path, None)
         self._travel: dict[SideName, float] = {"left": 0.0, "right": 0.0}
         self._rack = 0.0
+        self._roll = 0.0
         self._span = DEFAULT_SPAN[job.planned.units]
         self._selection: tuple[SideName, str] | None = None
         self._showing_found = False
@@ -113,7 +115,7 @@ class Document(QObject):
         if found is None:
             return None
         # A drag moves only the plan; the car as found is solved again when it is posed anew.
-        posed = (found, tuple(self._travel.values()), self._rack, self._span)
+        posed = (found, tuple(self._travel.values()), self._rack, self._roll, self._span)
         if self._found is None or self._found_posed != posed:
             self._found, self._found_posed = self._solved(found), posed
         return self._found
@@ -141,12 +143,22 @@ class Document(QObject):
                 self._timer.start()
 
     def _solved(self, layout: Layout) -> Solution:
-        return solve(layout, dict(self._travel), self._rack, self._span)
+        travel = dict(self._travel)
+        if self._roll:
+            heave = 0.5 * (travel["left"] + travel["right"])
+            travel = roll_travel(layout, self._roll, heave, self._rack)
+        return on_road(solve(layout, travel, self._rack, self._span))
 
     # --- stance on the floor (no undo steps) ------------------------------------------
 
     @property
     def travel(self) -> dict[SideName, float]:
+        """Where each wheel stands, mm, bump positive; roll is in it."""
+        return dict(self.solution.travel) if self._roll else dict(self._travel)
+
+    @property
+    def level_travel(self) -> dict[SideName, float]:
+        """The travel that was asked for, mm, before the body is rolled over it."""
         return dict(self._travel)
 
     def set_travel(self, left: float | None = None, right: float | None = None) -> None:
@@ -156,6 +168,9 @@ class Document(QObject):
             changed["left"] = left
         if right is not None:
             changed["right"] = right
+        if changed["left"] != changed["right"]:
+            # One wheel over a bump tilts the floor by itself.
+            self._roll = 0.0
         if changed != self._travel:
             self._travel = changed
             self._mark()
@@ -168,6 +183,21 @@ class Document(QObject):
         """Move the rack (or pitman end), mm to the car's left."""
         if rack != self._rack:
             self._rack = rack
+            self._mark()
+
+    @property
+    def roll(self) -> float:
+        """How far the body leans, rad; its left side up is positive (ISO 8855)."""
+        return self._roll
+
+    def set_roll(self, roll: float) -> None:
+        """Lean the body over both tires, rad; the wheels' travel goes on as its mean."""
+        roll = min(max(roll, -MOST_ROLL), MOST_ROLL)
+        if roll != self._roll:
+            self._roll = roll
+            if roll:
+                heave = 0.5 * (self._travel["left"] + self._travel["right"])
+                self._travel = {"left": heave, "right": heave}
             self._mark()
 
     @property
@@ -338,6 +368,7 @@ class Document(QObject):
         self.file.settle(path, mark)
         self._travel = {"left": 0.0, "right": 0.0}
         self._rack = 0.0
+        self._roll = 0.0
         self._selection = None
         self._showing_found = False
         self._span = DEFAULT_SPAN[job.planned.units]

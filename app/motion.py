@@ -23,7 +23,7 @@ class BumpMotion(QObject):
     def __init__(self, document: Document) -> None:
         super().__init__(document)
         self._document = document
-        self._before = document.travel
+        self._before = document.level_travel
         self._clock = QElapsedTimer()
         self._timer = QTimer(self)
         self._timer.setInterval(FRAME_MS)
@@ -38,7 +38,7 @@ class BumpMotion(QObject):
     def start(self) -> None:
         """Set off from ride height."""
         if not self.running:
-            self._before = self._document.travel
+            self._before = self._document.level_travel
             self._clock.start()
             self._timer.start()
             self.running_changed.emit(True)

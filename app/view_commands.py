@@ -26,18 +26,24 @@ class ViewCommands(QObject):
         self._commands = commands
         self._window = commands.window
         self._document = commands.document
-        add, floor = commands.add, self._window.floor
-        add(menu, "fit", "&Fit to floor", floor.fit, "Ctrl+0", icon="fit")
-        add(menu, "zoom in", "Zoom &in", floor.zoom_in, "Ctrl++", icon="zoom-in")
-        add(menu, "zoom out", "Zoom &out", floor.zoom_out, "Ctrl+-", icon="zoom-out")
+        add, window = commands.add, self._window
+        self._choice(menu, "floor", (("front", "From th&e front", "Ctrl+1"),
+                                     ("above", "From a&bove", "Ctrl+2")), self._floor)
+        menu.addSeparator()
+        add(menu, "fit", "&Fit to floor", lambda: window.floor.fit(), "Ctrl+0", icon="fit")
+        add(menu, "fit all", "Fit who&le car, from above", self._fit_all, "Ctrl+9")
+        add(menu, "zoom in", "Zoom &in", lambda: window.floor.zoom_in(), "Ctrl++",
+            icon="zoom-in")
+        add(menu, "zoom out", "Zoom &out", lambda: window.floor.zoom_out(), "Ctrl+-",
+            icon="zoom-out")
         menu.addSeparator()
         add(menu, "ride height", "Back to ride &height", self._window.stance_bar.ride_height,
             "Home", on_floor=True)
         add(menu, "tape", "&Tape measure", self._tape, "T", icon="tape-measure",
             checkable=True, on_floor=True)
         menu.addSeparator()
-        self._choice(menu, "show", (("found", "As foun&d", "Ctrl+1"),
-                                    ("planned", "As &planned", "Ctrl+2")), self._car)
+        self._choice(menu, "show", (("found", "As foun&d", "Ctrl+3"),
+                                    ("planned", "As &planned", "Ctrl+4")), self._car)
         menu.addSeparator()
         self._choice(menu, "units", (("in", "In&ches", ""), ("mm", "&Millimeters", "")),
                      self._units)
@@ -85,6 +91,16 @@ class ViewCommands(QObject):
         self._commands.actions["show found"].setEnabled(document.job.found is not None)
         shown = "found" if document.showing_found else "planned"
         self._commands.check(f"show {shown}", True)
+        above = self._window.floor.face.name == "above"
+        self._commands.check(f"floor {'above' if above else 'front'}", True)
+
+    def _floor(self, name: str, _checked: bool = True) -> None:
+        self._window.show_floor(name)
+
+    def _fit_all(self) -> None:
+        self._window.show_floor("above")
+        if self._window.above is not None:
+            self._window.above.fit_all()
 
     def _tape(self, on: bool) -> None:
         self._window.floor.tape_mode = on
@@ -97,11 +113,13 @@ class ViewCommands(QObject):
 
     def _dark(self, on: bool) -> None:
         settings.put("dark floor", on)
-        self._window.floor.set_dark(on)
+        self._window.front.set_dark(on)
+        if self._window.above is not None:
+            self._window.above.set_dark(on)
 
     def _curves(self, on: bool) -> None:
         settings.put("curves shown", on)
-        self._window.curves.setVisible(on)
+        self._window.curve_stack.setVisible(on)
 
     def _text_size(self, percent: str, _checked: bool = True) -> None:
         settings.put("text size", int(percent))

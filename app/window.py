@@ -20,6 +20,7 @@ from PySide6.QtWidgets import (
     QMainWindow,
     QMessageBox,
     QSplitter,
+    QStackedWidget,
     QToolButton,
     QVBoxLayout,
     QWidget,
@@ -28,16 +29,20 @@ from PySide6.QtWidgets import (
 from app import files, settings
 from app.commands import Commands
 from app.document import Document
+from app.floor.above import AboveView
 from app.floor.view import FloorView
 from app.home_file import FileMark
 from app.panels.curves import CurvesPanel
 from app.panels.findings import FindingsPanel
 from app.panels.flow import flow_of
+from app.panels.lock_curves import LockCurves
 from app.panels.measure_sheet import MeasureSheetPanel
 from app.panels.rack_zone import FloorZones
 from app.panels.readouts import ReadoutsPanel
 from app.panels.stance_bar import StanceBar
+from app.panels.steering import SteeringPanel
 from app.panels.tool_strip import ToolStrip
+from app.plan_watch import PlanWatch
 from app.recovery import Left, Recovery, left_behind
 from app.watch import RoomWatch
 from geometry.layout import Job
@@ -60,12 +65,17 @@ class MainWindow(QMainWindow):
         self.document = document
         document.setParent(self)
         self.setAcceptDrops(True)
-        self.floor = FloorView(document, self)
+        self.front = FloorView(document, self)
+        self.floor: FloorView = self.front
+        self.above: AboveView | None = None
         self.stance_bar = StanceBar(document)
         self.findings_panel = FindingsPanel(document)
         self.readouts_panel = ReadoutsPanel(document)
         self.measure_panel = MeasureSheetPanel(document)
         self.curves = CurvesPanel(document)
+        self.plan_watch = PlanWatch(document)
+        self.steering_panel = SteeringPanel(document, self.plan_watch)
+        self.lock_curves = LockCurves(document, self.plan_watch)
         self._lay_out()
         self._build_status()
         self.commands = Commands(self)
@@ -74,9 +84,10 @@ class MainWindow(QMainWindow):
         self.recovery = Recovery(document)
         self.recovery.failed.connect(self._tell_not_kept)
         self.room_watch = RoomWatch(document)
-        self.zones = FloorZones(document, self.floor)
+        self.zones = FloorZones(document, self.front)
         self.findings_panel.shown.connect(self._point_out)
-        self.floor.place_asked.connect(self._type_place)
+        self.steering_panel.refused.connect(self.show_refusal)
+        self.front.place_asked.connect(self._type_place)
         self.stance_bar.refused.connect(self.show_refusal)
         document.edited.connect(self._show_name)
         document.opened.connect(self._opened)
@@ -92,12 +103,18 @@ class MainWindow(QMainWindow):
         column = QVBoxLayout(left)
         column.setContentsMargins(8, 4, 2, 2)
         column.setSpacing(4)
-        column.addLayout(flow_of(self._car_switch(), bar.which, bar.travel, bar.rack))
+        column.addLayout(flow_of(
+            self._floor_switch(), self._car_switch(), bar.which, bar.travel, bar.rack, bar.roll
+        ))
         column.addWidget(self.guidance)
         self.stack = QSplitter(Qt.Orientation.Vertical)
         self.stack.setChildrenCollapsible(False)
-        self.stack.addWidget(self.floor)
-        self.stack.addWidget(self.curves)
+        self.floors, self.curve_stack = QStackedWidget(), QStackedWidget()
+        self.floors.addWidget(self.front)
+        self.curve_stack.addWidget(self.curves)
+        self.curve_stack.addWidget(self.lock_curves)
+        self.stack.addWidget(self.floors)
+        self.stack.addWidget(self.curve_stack)
         self.stack.setStretchFactor(0, 1)
         self.stack.setStretchFactor(1, 0)
         column.addWidget(self.stack, 1)
@@ -105,8 +122,11 @@ class MainWindow(QMainWindow):
         self.right = QSplitter(Qt.Orientation.Vertical)
         self.right.setChildrenCollapsible(False)
         self.right.setContentsMargins(2, 4, 8, 2)
+        self.cards = QStackedWidget()
+        self.cards.addWidget(self.readouts_panel)
+        self.cards.addWidget(self.steering_panel)
         for panel, share in (
-            (self.findings_panel, 2), (self.readouts_panel, 2), (self.measure_panel, 3)
+            (self.findings_panel, 2), (self.cards, 2), (self.measure_panel, 3)
         ):
             self.right.addWidget(panel)
             self.right.setStretchFactor(self.right.count() - 1, share)
@@ -127,8 +147,73 @@ class MainWindow(QMainWindow):
         self.across.setSizes([max(self.width() - right, 320), right])
         high = self.stack.height()
         self.stack.setSizes([high * 68 // 100, high * 32 // 100])
+        self._share_right(27, 28, 45)
+
+    def _share_right(self, *shares: int) -> None:
         high = self.right.height()
-        self.right.setSizes([high * 27 // 100, high * 28 // 100, high * 45 // 100])
+        self.right.setSizes([high * share // 100 for share in shares])
+
+    # --- floors -----------------------------------------------------------------------
+
+    def show_floor(self, name: str) -> None:
+        """The floor from the "front" or from "above", each with its own card and curves."""
+        above = name == "above"
+        if above == (self.floor is self.above):
+            return
+        had = self.floor.canvas.hasFocus()
+        if above and self.above is None:
+            self.above = self._new_above()
+        wanted: FloorView = self.above if above and self.above is not None else self.front
+        wanted.snapping, wanted.tape_mode = self.floor.snapping, False
+        self.floor.tape_mode = False
+        self.floor.wake(False)
+        self.floor = wanted
+        wanted.wake(True)
+        self.floors.setCurrentWidget(wanted)
+        self.curve_stack.setCurrentWidget(self.lock_curves if above else self.curves)
+        self.cards.setCurrentWidget(self.steering_panel if above else self.readouts_panel)
+        self._shares[not above] = self.right.sizes()
+        self.right.setSizes(self._shares.get(above) or self._first_shares())
+        self._floor_buttons.button(int(above)).setChecked(True)
+        self.commands.view_commands.refresh()
+        if had:
+            wanted.setFocus(Qt.FocusReason.OtherFocusReason)
+
+    def _first_shares(self) -> list[int]:
+        """The steering card says much: it gets half of the column."""
+        return [self.right.height() * share // 100 for share in (20, 50, 30)]
+
+    def _new_above(self) -> AboveView:
+        view = AboveView(self.document, self)
+        view.set_dark(self.commands.actions["dark"].isChecked())
+        view.pointer_moved.connect(self._show_place)
+        view.place_asked.connect(self._type_place)
+        self.commands.attach(view)
+        self.floors.addWidget(view)
+        return view
+
+    def _floor_switch(self) -> QWidget:
+        """From where the car is seen."""
+        holder = QWidget()
+        row = QHBoxLayout(holder)
+        row.setContentsMargins(0, 0, 0, 0)
+        row.setSpacing(0)
+        self._shares: dict[bool, list[int]] = {}
+        self._floor_buttons = QButtonGroup(self)
+        for key, words in (("front", "Front"), ("above", "Above")):
+            button = QToolButton()
+            button.setObjectName("segment")
+            button.setText(words)
+            button.setCheckable(True)
+            button.setToolTip(f"The floor from {'the front' if key == 'front' else 'above'}")
+            self._floor_buttons.addButton(button, int(key == "above"))
+            row.addWidget(button)
+        self._floor_buttons.button(0).setChecked(True)
+        self._floor_buttons.idClicked.connect(self._switch_floor)
+        return holder
+
+    def _switch_floor(self, which: int) -> None:
+        self.show_floor("above" if which else "front")
 
     def showEvent(self, event: QShowEvent) -> None:
         super().showEvent(event)
@@ -208,15 +293,15 @@ class MainWindow(QMainWindow):
         bar.addWidget(self._place)
         bar.addWidget(self._snap)
         bar.addPermanentWidget(self._car)
-        self.floor.pointer_moved.connect(self._show_place)
+        self.front.pointer_moved.connect(self._show_place)
         self.show_snap()
 
-    def _show_place(self, over: float, up: float) -> None:
+    def _show_place(self, over: float, second: float) -> None:
         units = self.document.units
         side = "left" if over >= 0 else "right"
         self._place.setText(
             f"{format_length(abs(over), units)} over ({side}) · "
-            f"{format_length(up, units)} up, {units}"
+            f"{format_length(second, units)} {self.floor.face.second}, {units}"
         )
 
     def show_snap(self) -> None:
@@ -248,7 +333,9 @@ class MainWindow(QMainWindow):
 
     def walk_panels(self, by: int) -> None:
         """Give the keyboard to the next panel, or the one before."""
-        stops = [self.floor, self.findings_panel.area, self.readouts_panel.table,
+        above = self.floor is self.above
+        card = self.steering_panel.area if above else self.readouts_panel.table
+        stops = [self.floor, self.findings_panel.area, card,
                  self.measure_panel.table, self.stance_bar.travel.field]
         has = QApplication.focusWidget()
         at = next(
@@ -382,10 +469,12 @@ class MainWindow(QMainWindow):
             return
         self.commands.layout_commands.motion.stop()
         self.room_watch.background.finish()
+        self.plan_watch.background.finish()
         self.recovery.end()
         self.document.file.leave()
         settings.put("window geometry", self.saveGeometry())
         settings.put("splitters at text size", settings.get_int("text size", 100, 100, 200))
+        self.show_floor("front")
         for name, splitter in self._splitters():
             settings.put(f"{name} splitter", splitter.saveState())
         event.accept()

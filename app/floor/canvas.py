@@ -66,6 +66,8 @@ class Canvas(QGraphicsView):
         self.unit: UnitName = "in"
         self.fitted = True
         self._content = QRectF(-900, -100, 1800, 900)
+        self.low_share = 0.35
+        """How much of the height that is to spare in a fitted view goes below the content."""
         self.setFrameShape(QFrame.Shape.NoFrame)
         self.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
         self.setVerticalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
@@ -141,9 +143,8 @@ class Canvas(QGraphicsView):
         if port.width() < 10 or port.height() < 10:
             return
         dots = min(port.width() / box.width(), port.height() / box.height())
-        # Spare height goes mostly above the car: the floor line stays low in the view.
         spare = port.height() - dots * box.height()
-        low = port.height() - 0.35 * spare
+        low = port.height() - self.low_share * spare
         self._set(dots, (box.center().x(), box.top()), QPointF(0.5 * port.width(), low))
         self.fitted = True
 

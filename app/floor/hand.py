@@ -145,18 +145,19 @@ class Hand:
         way = px - drag.pressed
         dx, dy = way.x(), way.y()
         if modifiers & _SHIFT:
-            # Straight over or straight up.
+            # Straight over, or straight along the floor's other measure.
             dx, dy = (dx, 0.0) if abs(dx) >= abs(dy) else (0.0, dy)
         dots, unit = view.canvas.dots, view.document.units
-        over = drag.start.over + sign_of(drag.key[0]) * dx / dots
-        up = drag.start.up - dy / dots
+        face, start = view.face, drag.start
+        over = start.over + sign_of(drag.key[0]) * dx / dots
+        second = face.measure(start) - face.way * dy / dots
         if view.snapping and not modifiers & _ALT:
-            over, up = snapped(over, unit), snapped(up, unit)
+            over, second = snapped(over, unit), snapped(second, unit)
         # An axis along which the hand hasn't gone keeps what was measured.
-        return Point(
-            over if abs(dx) > 0.5 else drag.start.over,
-            up if abs(dy) > 0.5 else drag.start.up,
-            drag.start.fore,
+        return face.moved(
+            start,
+            over if abs(dx) > 0.5 else start.over,
+            second if abs(dy) > 0.5 else face.measure(start),
         )
 
     def tape_place(self, px: QPointF, modifiers: Qt.KeyboardModifier) -> XY:
@@ -264,12 +265,12 @@ class Hand:
         if not view.may_move(chosen):
             return True
         layout = view.document.settled_layout()
-        point, unit = layout.point(*chosen), layout.units
-        over, up = point.over, point.up
+        point, unit, face = layout.point(*chosen), layout.units, view.face
+        over, second = point.over, face.measure(point)
         if way[0]:
             over = nudged(over, round(sign_of(chosen[0])) * way[0], size, unit)
         else:
-            up = nudged(up, way[1], size, unit)
-        view.document.move_point(*chosen, Point(over, up, point.fore))
+            second = nudged(second, round(face.way) * way[1], size, unit)
+        view.document.move_point(*chosen, face.moved(point, over, second))
         view.announce_nail(chosen)
         return True

@@ -16,7 +16,7 @@ from PySide6.QtGui import (
 from PySide6.QtWidgets import QGestureEvent, QPinchGesture
 
 from app.floor.canvas import Canvas
-from app.floor.scene import FloorScene
+from app.floor.scene import CarScene
 
 if TYPE_CHECKING:
     from app.floor.view import FloorView
@@ -25,12 +25,13 @@ if TYPE_CHECKING:
 class HandledCanvas(Canvas):
     """The canvas with its events handed to a FloorView."""
 
-    def __init__(self, scene: FloorScene, owner: FloorView) -> None:
+    def __init__(self, scene: CarScene, owner: FloorView) -> None:
         super().__init__(scene, owner)
         self._owner = owner
         self.setFocusPolicy(Qt.FocusPolicy.StrongFocus)
         self.viewport().grabGesture(Qt.GestureType.PinchGesture)
-        self.setAccessibleName("Floor, front view")
+        views = {"front": "front view", "above": "view from above"}
+        self.setAccessibleName(f"Floor, {views[owner.face.name]}")
         self.setAccessibleDescription(
             "Tab walks the nails, arrow keys move the chosen one. The measure sheet holds the "
             "same places as a table."

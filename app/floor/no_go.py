@@ -9,6 +9,7 @@ from PySide6.QtWidgets import QGraphicsPathItem, QGraphicsScene
 
 from app.floor.paths import path_of, pen
 from app.palette import Palette
+from geometry.faces import Face
 from geometry.layout import SIDES, NoGo
 from geometry.standing import sign_of
 
@@ -18,7 +19,8 @@ NO_GO_Z = 7.0
 class NoGoItems:
     """All shapes in one item, remade when they change."""
 
-    def __init__(self, scene: QGraphicsScene) -> None:
+    def __init__(self, scene: QGraphicsScene, face: Face) -> None:
+        self._face = face
         self._item = QGraphicsPathItem()
         self._item.setZValue(NO_GO_Z)
         scene.addItem(self._item)
@@ -36,10 +38,12 @@ class NoGoItems:
         self.places = []
         outlines = []
         for shape in shapes:
-            if shape.view != "front" or len(shape.outline) < 3:
+            if shape.view != self._face.name or len(shape.outline) < 3:
                 continue
             for side in SIDES if shape.side is None else (shape.side,):
-                outline = np.array(shape.outline, dtype=float) * (sign_of(side), 1.0)
+                outline = np.array(shape.outline, dtype=float) * (
+                    sign_of(side), self._face.way
+                )
                 outlines.append(outline)
                 middle = 0.5 * (outline.min(axis=0) + outline.max(axis=0))
                 self.places.append((shape.name, float(middle[0]), float(outline[:, 1].max())))

@@ -11,6 +11,7 @@ from PySide6.QtWidgets import QGraphicsPathItem, QGraphicsScene
 from app.floor.paths import NO_BRUSH, NO_PEN, brush, path_of, pen, same_outlines
 from app.floor.stillness import Stillness
 from app.palette import BROKEN_DASH, CHALK_DASH, Palette, mixed
+from geometry.faces import FRONT, Face
 from geometry.front_parts import OPEN_ROLES, ROLES, Part, Role
 from geometry.layout import SIDES, SideName
 from geometry.linkage import Array
@@ -22,26 +23,32 @@ OWNERS: tuple[SideName | None, ...] = (None, *SIDES)
 _WIDTHS: dict[str, float] = {"tire": 1.8, "groove": 1.2}
 _BARS: dict[str, float] = {"rim": 5.0, "spring": 11.0}
 """Roles that are bars of this thickness, mm, drawn as a line in a line."""
-_FUSED = frozenset({"knuckle", "arm", "relay", *_BARS})
+_FUSED = frozenset({"knuckle", "arm", "low arm", "relay", *_BARS})
 """Roles whose outlines melt into one: drawn first with an edge, then filled over it."""
-_FOUND_ROLES = ("tire", "arm", "knuckle", "tie", "strut", "rack", "relay")
+_FOUND_ROLES = ("tire", "arm", "low arm", "knuckle", "tie", "strut", "rack", "relay")
 
 
-def rounded(color: str, dark: bool) -> QBrush:
-    """A brush that makes a flat outline look round: light from the upper left."""
+def rounded(color: str, dark: bool, across: bool = True) -> QBrush:
+    """A brush that makes a flat outline look round: ``across`` its width, or along its height."""
     light, shade = mixed(color, "#FFFFFF", 0.10 if dark else 0.16), mixed(color, "#000000", 0.30)
-    across = QLinearGradient(0.0, 0.0, 1.0, 0.0)
-    across.setCoordinateMode(QLinearGradient.CoordinateMode.ObjectMode)
+    over = QLinearGradient(0.0, 0.0, 1.0 if across else 0.0, 0.0 if across else 1.0)
+    over.setCoordinateMode(QLinearGradient.CoordinateMode.ObjectMode)
     for at, tone in ((0.0, shade), (0.22, color), (0.40, light), (0.62, color), (1.0, shade)):
-        across.setColorAt(at, QColor(tone))
-    return QBrush(across)
+        over.setColorAt(at, QColor(tone))
+    return QBrush(over)
 
 
 class PartItems:
     """One path item per owner and role (two where outlines melt into one)."""
 
-    def __init__(self, scene: QGraphicsScene, still: Stillness) -> None:
-        self._still = still
+    def __init__(
+        self,
+        scene: QGraphicsScene,
+        still: Stillness,
+        roles: tuple[Role, ...] = ROLES,
+        face: Face = FRONT,
+    ) -> None:
+        self._still, self._roles, self._face = still, roles, face
         self._items: dict[tuple[SideName | None, Role], list[QGraphicsPathItem]] = {}
         self._broken: dict[SideName | None, bool] = dict.fromkeys(OWNERS, False)
         self._shapes: dict[tuple[SideName | None, Role], list[Array]] = {}
@@ -52,7 +59,7 @@ class PartItems:
         self.found = QGraphicsPathItem()
         self.found.setZValue(FOUND_Z)
         scene.addItem(self.found)
-        for depth, role in enumerate(ROLES):
+        for depth, role in enumerate(roles):
             for owner in OWNERS:
                 layers = 2 if role in _FUSED else 1
                 self._items[owner, role] = [
@@ -82,14 +89,16 @@ class PartItems:
                 # Half of it disappears under the fill.
                 self._pens[role] = pen(edge, 2.0 * width)
             self._brushes[role] = NO_BRUSH if role in _BARS else brush(fill)
-        self._brushes["tire"] = rounded(palette.parts["tire"][0] or palette.floor, palette.dark)
+        self._brushes["tire"] = rounded(
+            palette.parts["tire"][0] or palette.floor, palette.dark, self._face is FRONT
+        )
         self._pens["broken"] = pen(palette.broken, 1.4 * ratio, BROKEN_DASH)
         self.found.setPen(pen(palette.dust, 2.2 * ratio, CHALK_DASH))
         for owner in OWNERS:
             self._style(owner)
 
     def _style(self, owner: SideName | None) -> None:
-        for role in ROLES:
+        for role in self._roles:
             items = self._items[owner, role]
             if self._broken[owner]:
                 items[0].setPen(NO_PEN if role.endswith("light") else self._pens["broken"])

@@ -15,7 +15,8 @@ from app.floor.parts import PartItems
 from app.floor.stillness import Stillness
 from app.floor.tags import TagItems
 from app.palette import Palette
-from geometry.front_parts import car_parts, side_parts
+from geometry.faces import FRONT, Face
+from geometry.front_parts import ROLES, Part, Role, car_parts, side_parts
 from geometry.front_strings import (
     InstantCenter,
     String,
@@ -30,56 +31,55 @@ from geometry.solution import Solution
 from geometry.standing import XY, Standing, relay_standing, standing
 
 
-class FloorScene(QGraphicsScene):
-    """Items made once and moved with every solution."""
+class CarScene(QGraphicsScene):
+    """A car seen from one way: items made once and moved with every solution."""
+
+    face: Face = FRONT
+    roles: tuple[Role, ...] = ROLES
 
     def __init__(self) -> None:
         super().__init__()
         self._still = Stillness()
-        self.parts = PartItems(self, self._still)
-        self.no_go = NoGoItems(self)
-        self.strings = StringItems(self)
-        self.marks = MarkItems(self, self._still)
+        self.parts = PartItems(self, self._still, self.roles, self.face)
+        self.no_go = NoGoItems(self, self.face)
         self.nails = NailItems(self, self._still)
         self.tags = TagItems(self, self._still)
         self.stands: dict[SideName, Standing] = {}
         self.places: dict[Key, XY] = {}
-        self.centers: dict[SideName, InstantCenter] = {}
-        self.roll: XY | None = None
-        self.gravity: XY | None = None
-        self.pivots: dict[tuple[SideName, str], XY] = {}
-        self._strings: list[String] = []
-        self._tire_floor: tuple[XY, XY] | None = None
-        self._zones: dict[SideName, list[Array]] = {}
         self._found_shown: tuple[object, ...] | None = None
 
     def dress(self, palette: Palette, font: QFont, ratio: float) -> None:
         self.parts.dress(palette, ratio)
         self.no_go.dress(palette, ratio)
-        self.strings.dress(palette, ratio)
-        self.marks.dress(palette, ratio)
         self.nails.dress(palette)
         self.tags.dress(palette, font, ratio)
+
+    def _side_parts(self, stand: Standing) -> list[Part]:
+        return side_parts(stand)
+
+    def _parts(self, solution: Solution, both: dict[SideName, Standing]) -> list[Part]:
+        parts = [part for stand in both.values() for part in self._side_parts(stand)]
+        return parts + car_parts(solution, both)
+
+    def _standing(self, solution: Solution) -> dict[SideName, Standing]:
+        return {side: standing(solution, side, self.face) for side in SIDES}
 
     def follow(self, solution: Solution, outline: Solution | None) -> None:
         """Move everything to where a solution has it."""
         self._still.frame()
-        both = {side: standing(solution, side) for side in SIDES}
+        both = self._standing(solution)
         self.stands = both
-        parts = [part for stand in both.values() for part in side_parts(stand)]
-        parts += car_parts(solution, both)
-        self.parts.show(parts, {side for side in SIDES if not both[side].meets})
+        broken = {side for side in SIDES if not both[side].meets}
+        self.parts.show(self._parts(solution, both), broken)
         self._follow_found(solution, outline)
         self.no_go.show(solution.layout.no_go)
-        relay = relay_standing(solution)
+        relay = relay_standing(solution, self.face)
         self.places = {
             (side, name): relay[name] if name in relay else both[side].points[name]
             for side, name in solution.layout.nails()
         }
         self.nails.show(self.places, solution.layout.locked)
         self._follow_marks(solution, both)
-        for side in self._zones:
-            self._show_zone(side)
 
     def _follow_found(self, solution: Solution, outline: Solution | None) -> None:
         if outline is None or _same_car(solution, outline):
@@ -91,9 +91,39 @@ class FloorScene(QGraphicsScene):
         if stance == self._found_shown:
             return
         self._found_shown = stance
-        both = {side: standing(outline, side) for side in SIDES}
-        found = [part for stand in both.values() for part in side_parts(stand)]
-        self.parts.show_found(found + car_parts(outline, both))
+        self.parts.show_found(self._parts(outline, self._standing(outline)))
+
+    def _follow_marks(self, solution: Solution, both: dict[SideName, Standing]) -> None:
+        """Move the construction lines and points of this view."""
+        raise NotImplementedError
+
+    def stretch(self, box: tuple[float, float, float, float]) -> None:
+        """Clip what runs far to what is in view, mm."""
+        raise NotImplementedError
+
+    def set_zone(self, side: SideName, outlines: list[Array]) -> None:
+        """Where a side's inner tie-rod pivot may sit, where this view shows that."""
+
+
+class FloorScene(CarScene):
+    """The car from the front, with its strings and centers."""
+
+    def __init__(self) -> None:
+        super().__init__()
+        self.strings = StringItems(self)
+        self.marks = MarkItems(self, self._still)
+        self.centers: dict[SideName, InstantCenter] = {}
+        self.roll: XY | None = None
+        self.gravity: XY | None = None
+        self.pivots: dict[tuple[SideName, str], XY] = {}
+        self._strings: list[String] = []
+        self._tire_floor: tuple[XY, XY] | None = None
+        self._zones: dict[SideName, list[Array]] = {}
+
+    def dress(self, palette: Palette, font: QFont, ratio: float) -> None:
+        super().dress(palette, font, ratio)
+        self.strings.dress(palette, ratio)
+        self.marks.dress(palette, ratio)
 
     def _follow_marks(self, solution: Solution, both: dict[SideName, Standing]) -> None:
         self._strings = strings(solution, both)
@@ -104,10 +134,10 @@ class FloorScene(QGraphicsScene):
             center = instant_center(solution, side) if both[side].meets else None
             if center is not None:
                 self.centers[side] = center
-            near = center is not None and not center.at_infinity and _near(center.place)
-            self.marks.centers[side].put(center.place if near and center is not None else None)
+            shown = center is not None and not center.at_infinity and near(center.place)
+            self.marks.centers[side].put(center.place if shown and center is not None else None)
         self.roll = solution.roll_center_place if solution.assembles else None
-        self.marks.roll.put(self.roll if self.roll is not None and _near(self.roll) else None)
+        self.marks.roll.put(self.roll if self.roll is not None and near(self.roll) else None)
         high = solution.layout.cg_height
         self.gravity = None if high is None else (0.0, high)
         self.marks.gravity.put(self.gravity)
@@ -116,10 +146,12 @@ class FloorScene(QGraphicsScene):
             for side in SIDES
             if both[side].meets
             for kind, place in inner_pivot_places(solution, both[side]).items()
-            if _near(place)
+            if near(place)
         }
         for key, mark in self.marks.pivots.items():
             mark.put(self.pivots.get(key))
+        for side in self._zones:
+            self._show_zone(side)
 
     def stretch(self, box: tuple[float, float, float, float]) -> None:
         """Clip the strings to what is in view, mm."""
@@ -138,7 +170,7 @@ class FloorScene(QGraphicsScene):
             self.marks.set_zone(side, moved)
 
 
-def _near(place: XY) -> bool:
+def near(place: XY) -> bool:
     """Not so far off that a view's coordinates would suffer."""
     return abs(place[0]) < 40_000.0 and abs(place[1]) < 40_000.0
 

@@ -12,11 +12,18 @@ from geometry.tape import marks
 
 
 class Tape(QWidget):
-    """One tape. ``origin`` is the pixel of its zero, ``dots`` its pixels per mm."""
+    """One tape. ``origin`` is the pixel of its zero, ``dots`` its pixels per mm.
 
-    def __init__(self, orientation: Qt.Orientation, parent: QWidget | None = None) -> None:
+    An upright tape's measures, called ``name``, grow up the screen, or down it with ``down``.
+    """
+
+    def __init__(
+        self, orientation: Qt.Orientation, parent: QWidget | None = None, *,
+        name: str = "up", down: bool = False,
+    ) -> None:
         super().__init__(parent)
         self._across = orientation == Qt.Orientation.Horizontal
+        self._way = 1.0 if self._across or down else -1.0
         self._palette = LIGHT
         self._unit: UnitName = "in"
         self._origin, self._dots = 0.0, 1.0
@@ -25,7 +32,7 @@ class Tape(QWidget):
         fixed, free = QSizePolicy.Policy.Fixed, QSizePolicy.Policy.Ignored
         self.setSizePolicy(free if self._across else fixed, fixed if self._across else free)
         self.setAttribute(Qt.WidgetAttribute.WA_OpaquePaintEvent)
-        self.setAccessibleName("Tape, over" if self._across else "Tape, up")
+        self.setAccessibleName("Tape, over" if self._across else f"Tape, {name}")
 
     def thickness(self) -> int:
         """How wide the strip must be for its numerals and ticks."""
@@ -142,8 +149,7 @@ class Tape(QWidget):
                 painter.drawText(QPointF(deep - 14.0 - wide, base), numeral)
 
     def _px(self, mm: float) -> float:
-        return self._origin + (mm if self._across else -mm) * self._dots
+        return self._origin + self._way * mm * self._dots
 
     def _mm(self, px: float) -> float:
-        along = (px - self._origin) / self._dots
-        return along if self._across else -along
+        return self._way * (px - self._origin) / self._dots

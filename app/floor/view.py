@@ -1,4 +1,8 @@
-"""FloorView: the front view of the open car, drawn from its solution and edited by hand."""
+"""FloorView: the front view of the open car, drawn from its solution and edited by hand.
+
+The view from above (``app.floor.above``) is a FloorView too: all habits of the hand are the
+same, only what stands on the floor and which two measures it shows differ.
+"""
 
 from __future__ import annotations
 
@@ -18,11 +22,13 @@ from app.floor.handled_canvas import HandledCanvas
 from app.floor.measuring import MeasuringTape
 from app.floor.menu import nail_menu
 from app.floor.nails import REACH, Key, nearest
-from app.floor.scene import FloorScene, zone_outlines
+from app.floor.scene import CarScene, FloorScene, zone_outlines
 from app.floor.tag_list import tag_list
+from app.floor.tags import TagSpec
 from app.floor.tapes import Tape
 from app.palette import DARK, LIGHT, Palette
 from geometry.drawing import Drawing
+from geometry.faces import FRONT, Face
 from geometry.finding_checks.finding import Finding
 from geometry.floor_drawing import floor_drawing, floor_pages
 from geometry.labels import Box
@@ -36,8 +42,10 @@ _NOTICE_MS = 4500
 class FloorView(QWidget):
     """The floor with its two tapes."""
 
+    face: Face = FRONT
+
     pointer_moved = Signal(float, float)
-    """The pointer's place: over (left of the car positive) and up, mm."""
+    """The pointer's place: over (left of the car positive) and the second measure, mm."""
     place_asked = Signal(str, str)
     """A person wants to type a place for a nail (side, point name)."""
     tape_mode_changed = Signal(bool)
@@ -47,12 +55,14 @@ class FloorView(QWidget):
     def __init__(self, document: Document, parent: QWidget | None = None) -> None:
         super().__init__(parent)
         self.document = document
-        self.scene = FloorScene()
+        self.scene: CarScene = self._new_scene()
         self.hand = Hand(self)
         self.canvas = HandledCanvas(self.scene, self)
         self.measuring = MeasuringTape(self.scene)
         self.across = Tape(Qt.Orientation.Horizontal, self)
-        self.upright = Tape(Qt.Orientation.Vertical, self)
+        self.upright = Tape(
+            Qt.Orientation.Vertical, self, name=self.face.second, down=self.face.way < 0.0
+        )
         self._corner = QLabel(self)
         self._corner.setAlignment(Qt.AlignmentFlag.AlignCenter)
         grid = QGridLayout(self)
@@ -66,6 +76,7 @@ class FloorView(QWidget):
         self.setMinimumSize(320, 240)
         self.snapping = True
         self.hovered: Key | None = None
+        self._awake, self._stale = True, False
         self._notice: tuple[str, str, Key | None] | None = None
         self._tape_mode = False
         self._palette: Palette = LIGHT
@@ -81,6 +92,9 @@ class FloorView(QWidget):
         document.edited.connect(self._edited)
         document.selected.connect(self._selected)
         document.opened.connect(self._opened)
+
+    def _new_scene(self) -> CarScene:
+        return FloorScene()
 
     def viewport(self) -> QWidget:
         """The widget that takes the mouse."""
@@ -116,8 +130,20 @@ class FloorView(QWidget):
 
     # --- following the document -------------------------------------------------------
 
+    def wake(self, awake: bool) -> None:
+        """A floor that is not in sight sleeps: it follows nothing until it is woken."""
+        self._awake = awake
+        if awake and self._stale:
+            self._dress()
+            self.refresh()
+            if self.canvas.fitted:
+                self.fit()
+
     def refresh(self) -> None:
         """Draw the solution that stands."""
+        self._stale = not self._awake
+        if self._stale:
+            return
         document = self.document
         self.scene.follow(document.shown_solution, document.outline_solution)
         if self.hovered not in self.scene.places:
@@ -132,28 +158,39 @@ class FloorView(QWidget):
         self.scene.nails.hover(self.hovered if self.hand.drag is None else self.hand.drag.key)
         port = canvas.viewport().rect()
         area = Box(4.0, 4.0, port.width() - 8.0, port.height() - 8.0)
-        specs, soft = tag_list(self, area)
+        specs, soft = self._tags(area)
         self.scene.tags.show(specs, area, soft, [], canvas.from_px)
         x, y = canvas.to_px(0.0, 0.0)
         self.across.lay(x, canvas.dots, self.document.units)
         self.upright.lay(y, canvas.dots, self.document.units)
 
+    def _tags(self, area: Box) -> tuple[list[TagSpec], list[Box]]:
+        """The tags to show, most wanted first, and boxes that they should not cover."""
+        return tag_list(self, area)
+
     def _edited(self) -> None:
         self.hand.forget()
+        if self._stale:
+            return
         if self.canvas.unit != self.document.units:
             self._dress()
             self.lay_out()
 
     def _selected(self) -> None:
-        self.lay_out()
+        if self._awake:
+            self.lay_out()
 
     def _opened(self) -> None:
         self.hand.forget()
         self.hovered = None
         self._notice = None
-        self.roll_up_tape()
+        self.measuring.roll_up()
         self.scene.set_zone("left", [])
         self.scene.set_zone("right", [])
+        self._stale = not self._awake
+        if self._stale:
+            self.canvas.fitted = True
+            return
         self._dress()
         self.refresh()
         self.fit()
@@ -213,7 +250,8 @@ class FloorView(QWidget):
         """Tell the tapes and the status bar where the pointer is."""
         self.across.point(px.x())
         self.upright.point(px.y())
-        self.pointer_moved.emit(*self.canvas.to_mm(px))
+        over, second = self.canvas.to_mm(px)
+        self.pointer_moved.emit(over, self.face.way * second)
 
     def pointer_left(self) -> None:
         self.across.point(None)
@@ -292,7 +330,7 @@ class FloorView(QWidget):
             self.choose(keys[-1])
 
     def announce_nail(self, key: Key) -> None:
-        self.announce(wording.spoken(self.document.layout, key))
+        self.announce(wording.spoken(self.document.layout, key, self.face))
 
     def announce(self, words: str) -> None:
         """Tell a screen reader."""
@@ -381,7 +419,7 @@ class FloorView(QWidget):
         start, end = self.tape_ends
         units = self.document.units
         far = wording.distance_words(start, end, units)
-        return f"{far}: {wording.measured_words(start, end, units)}"
+        return f"{far}: {wording.measured_words(start, end, units, self.face)}"
 
     def show_cursor(self) -> None:
         if self.hand.panning is not None:

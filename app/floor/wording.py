@@ -5,6 +5,7 @@ from __future__ import annotations
 import math
 
 from app.floor.nails import Key
+from geometry.faces import FRONT, Face
 from geometry.floor_words import capital
 from geometry.layout import RELAY_POINTS, Layout, UnitName
 from geometry.lengths import format_length
@@ -20,31 +21,29 @@ def nail_name(layout: Layout, key: Key) -> str:
     return f"{capital(side)} {name}"
 
 
-def place_words(over: float, up: float, unit: UnitName) -> str:
-    return f"{tape_text(over, unit)} over · {tape_text(up, unit)} up"
+def nail_words(layout: Layout, key: Key, face: Face = FRONT) -> str:
+    """Where a nail is measured, at ride height, by the two measures of a floor."""
+    point, unit = layout.point(*key), layout.units
+    second = tape_text(face.measure(point), unit)
+    return f"{tape_text(point.over, unit)} over · {second} {face.second}"
 
 
-def nail_words(layout: Layout, key: Key) -> str:
-    """Where a nail is measured, at ride height."""
-    point = layout.point(*key)
-    return place_words(point.over, point.up, layout.units)
-
-
-def spoken(layout: Layout, key: Key) -> str:
+def spoken(layout: Layout, key: Key, face: Face = FRONT) -> str:
     """The same for a screen reader."""
     point = layout.point(*key)
     unit = "inches" if layout.units == "in" else "millimeters"
     locked = ", locked" if key[1] in layout.locked else ""
     return (
         f"{nail_name(layout, key)}: {tape_text(point.over, layout.units)} over, "
-        f"{tape_text(point.up, layout.units)} up, {unit}{locked}"
+        f"{tape_text(face.measure(point), layout.units)} {face.second}, {unit}{locked}"
     )
 
 
-def measured_words(start: XY, end: XY, unit: UnitName) -> str:
+def measured_words(start: XY, end: XY, unit: UnitName, face: Face = FRONT) -> str:
     """What the measuring tape reads between two places."""
-    dx, dy = end[0] - start[0], end[1] - start[1]
-    rise = "down" if dy < 0.0 else "up"
+    dx, dy = end[0] - start[0], face.way * (end[1] - start[1])
+    words = ("down", "up") if face.second == "up" else ("to the rear", "to the front")
+    rise = words[dy >= 0.0]
     angle = math.degrees(math.atan2(abs(dy), abs(dx)))
     return f"{tape_text(abs(dx), unit)} over · {tape_text(abs(dy), unit)} {rise} · {angle:.1f}°"
 

@@ -17,6 +17,7 @@ from PySide6.QtWidgets import (
 
 from app.document import Document
 from app.panels.card import Card
+from app.panels.steady_label import SteadyLabel
 from geometry.findings import Finding
 from geometry.layout import Layout
 
@@ -27,9 +28,8 @@ NOTHING = "Nothing to find fault with in this car, as far as it was measured."
 
 
 def _text_label(kind: str) -> QLabel:
-    label = QLabel()
+    label = SteadyLabel()
     label.setObjectName(kind)
-    label.setWordWrap(True)
     # As high as its lines need at the width there is, and never a column of single words.
     policy = QSizePolicy(QSizePolicy.Policy.Ignored, QSizePolicy.Policy.Minimum)
     policy.setHeightForWidth(True)

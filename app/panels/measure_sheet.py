@@ -54,7 +54,8 @@ class MeasureSheetPanel(Card):
 
     def _size(self) -> None:
         """Columns and rows as wide and high as the letters need."""
-        letters = self.table.fontMetrics()
+        # The card's own letters: a change of font reaches the table only after the card.
+        letters = self.fontMetrics()
         self.table.verticalHeader().setDefaultSectionSize(letters.height() + 7)
         header = self.table.horizontalHeader()
         width = letters.horizontalAdvance(_WIDEST_LENGTH) + 10

@@ -115,7 +115,7 @@ class ReadoutsPanel(Card):
 
     def _size(self) -> None:
         """Rows as high as the letters need, columns as wide as what stands in them."""
-        height = self.table.fontMetrics().height() + 5
+        height = self.fontMetrics().height() + 5
         self.table.verticalHeader().setMinimumSectionSize(1)
         self.table.verticalHeader().setDefaultSectionSize(height)
         self.table.horizontalHeader().setFixedHeight(height)
@@ -127,7 +127,7 @@ class ReadoutsPanel(Card):
 
     def _widen(self, column: int, text: str) -> None:
         """Make room for a text; a column that is wide enough stays as it is."""
-        width = self.table.fontMetrics().horizontalAdvance(text) + _AIR
+        width = self.fontMetrics().horizontalAdvance(text) + _AIR
         if width > self._widths[column]:
             self._widths[column] = width
             self.table.setColumnWidth(column, width)

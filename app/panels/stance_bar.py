@@ -1,6 +1,8 @@
-"""The row above the floor: wheel travel and rack, each by slider or typed."""
+"""The row above the floor: wheel travel, rack and roll, each by slider or typed."""
 
 from __future__ import annotations
+
+import math
 
 from PySide6.QtCore import QEvent, QObject, Qt, Signal
 from PySide6.QtGui import QKeyEvent
@@ -16,7 +18,8 @@ from PySide6.QtWidgets import (
 
 from app import theme
 from app.document import Document
-from geometry.lengths import format_length, parse_length
+from geometry.lengths import format_angle, format_length, parse_angle, parse_length
+from geometry.road import MOST_ROLL
 
 _STEPS_PER_MM = 4
 _FARTHEST = 500.0
@@ -36,7 +39,13 @@ class LengthField(QLineEdit):
 
 
 class LengthControl(QWidget):
-    """A label, a slider and a field that reads tape text; all three show one length."""
+    """A label, a slider and a field that reads tape text; all three show one length, mm."""
+
+    per_step = 1.0 / _STEPS_PER_MM
+    """What one step of the slider is worth."""
+    steps = _STEPS_PER_MM, 25 * _STEPS_PER_MM
+    """Slider steps of an arrow key and of a page key."""
+    widest = "−12 15/16  "
 
     moved = Signal(float)
     refused = Signal(str)
@@ -51,11 +60,11 @@ class LengthControl(QWidget):
         row.setContentsMargins(0, 0, 0, 0)
         name = QLabel(label)
         self.slider = QSlider(Qt.Orientation.Horizontal)
-        self.slider.setRange(-round(reach * _STEPS_PER_MM), round(reach * _STEPS_PER_MM))
-        self.slider.setPageStep(round(25 * _STEPS_PER_MM))
-        self.slider.setSingleStep(_STEPS_PER_MM)
+        self.slider.setRange(-round(reach / self.per_step), round(reach / self.per_step))
+        self.slider.setSingleStep(self.steps[0])
+        self.slider.setPageStep(self.steps[1])
         self.slider.setAccessibleName(plain)
-        self.field = LengthField("0")
+        self.field = LengthField(self._text())
         self.field.setAccessibleName(f"{plain}, typed")
         self.field.setAlignment(Qt.AlignmentFlag.AlignRight)
         name.setBuddy(self.field)
@@ -69,7 +78,7 @@ class LengthControl(QWidget):
         self.field.undo_typing.connect(self._take_back)
 
     def _size(self) -> None:
-        width = self.fontMetrics().horizontalAdvance("−12 15/16  ")
+        width = self.fontMetrics().horizontalAdvance(self.widest)
         self.field.setFixedWidth(width + 8)
         self.slider.setMinimumWidth(70)
 
@@ -82,13 +91,23 @@ class LengthControl(QWidget):
         """Show a length, mm, without telling anyone."""
         self._value = value
         blocked = self.slider.blockSignals(True)
-        self.slider.setValue(round(value * _STEPS_PER_MM))
+        self.slider.setValue(round(value / self.per_step))
         self.slider.blockSignals(blocked)
         if not self.field.isModified():
             self._show_text()
 
+    def _text(self) -> str:
+        return format_length(self._value, self._document.units)
+
+    def _read(self, text: str) -> float:
+        """What was typed; ValueError with a plain reason if it can't be taken."""
+        value = parse_length(text, self._document.units)
+        if abs(value) > _FARTHEST:
+            raise ValueError("No car's suspension or rack goes that far.")
+        return value
+
     def _show_text(self) -> None:
-        self.field.setText(format_length(self._value, self._document.units))
+        self.field.setText(self._text())
         self.field.setStyleSheet("")
         self.field.setToolTip("")
 
@@ -101,15 +120,13 @@ class LengthControl(QWidget):
         # What was typed and refused gives way to the hand on the slider.
         self.field.setModified(False)
         self.refused.emit("")
-        self.moved.emit(steps / _STEPS_PER_MM)
+        self.moved.emit(steps * self.per_step)
 
     def _typed(self) -> None:
         if not self.field.isModified():
             return
         try:
-            value = parse_length(self.field.text() or "0", self._document.units)
-            if abs(value) > _FARTHEST:
-                raise ValueError("No car's suspension or rack goes that far.")
+            value = self._read(self.field.text() or "0")
         except ValueError as reason:
             self.field.setStyleSheet(f"color: {theme.REFUSED};")
             self.field.setToolTip(str(reason))
@@ -121,10 +138,27 @@ class LengthControl(QWidget):
         self.show_value(value)
 
 
+class AngleControl(LengthControl):
+    """The same for an angle, rad, read and shown in degrees."""
+
+    per_step = math.radians(0.05)
+    steps = 2, 20
+    widest = "−12.00°"
+
+    def _text(self) -> str:
+        return format_angle(self._value)
+
+    def _read(self, text: str) -> float:
+        value = parse_angle(text)
+        if abs(value) > MOST_ROLL:
+            raise ValueError(f"No body rolls farther than {math.degrees(MOST_ROLL):.0f} degrees.")
+        return value
+
+
 class StanceBar(QObject):
     """Where the wheels and the rack stand on the floor. Not part of the car, so no undo.
 
-    Holds the three widgets ``which``, ``travel`` and ``rack``; the window places them.
+    Holds the widgets ``which``, ``travel``, ``rack`` and ``roll``; the window places them.
     """
 
     refused = Signal(str)
@@ -139,6 +173,10 @@ class StanceBar(QObject):
         self.travel.setToolTip("Wheel travel against the body; bump positive, droop negative")
         self.rack = LengthControl("&Rack", 100.0, document)
         self.rack.setToolTip("Rack or pitman end moved to the car's left, positive")
+        self.roll = AngleControl("R&oll", math.radians(8.0), document)
+        self.roll.setToolTip("The body leaned over both tires; its left side up is positive")
+        self.roll.moved.connect(document.set_roll)
+        self.roll.refused.connect(self.refused)
         self.travel.moved.connect(self._set_travel)
         self.rack.moved.connect(document.set_rack)
         self.travel.refused.connect(self.refused)
@@ -157,10 +195,13 @@ class StanceBar(QObject):
     def refresh(self) -> None:
         """Show what the document has."""
         side = "right" if self.which.currentIndex() == 2 else "left"
-        self.travel.show_value(self._document.travel["right" if side == "right" else "left"])
+        asked = self._document.level_travel
+        self.travel.show_value(asked["right" if side == "right" else "left"])
         self.rack.show_value(self._document.rack)
+        self.roll.show_value(self._document.roll)
 
     def ride_height(self) -> None:
-        """Both wheels to ride height, rack centered."""
+        """Both wheels to ride height, the body level, the rack centered."""
+        self._document.set_roll(0.0)
         self._document.set_travel(0.0, 0.0)
         self._document.set_rack(0.0)

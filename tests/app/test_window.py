@@ -7,7 +7,7 @@ import threading
 from collections import Counter
 
 import pytest
-from PySide6.QtCore import QThreadPool, QTimer, Qt
+from PySide6.QtCore import Qt, QThreadPool, QTimer
 from PySide6.QtGui import QGuiApplication
 from PySide6.QtTest import QTest
 from PySide6.QtWidgets import (
@@ -124,7 +124,8 @@ def test_no_two_commands_share_a_key(window):
     keys = Counter(
         key.toString() for action in window.commands.actions.values() for key in action.shortcuts()
     )
-    layout_keys = (a.shortcut().toString() for a in window.commands.layout_commands.actions.values())
+    own = window.commands.layout_commands.actions.values()
+    layout_keys = (action.shortcut().toString() for action in own)
     keys.update(key for key in layout_keys if key)
     assert [key for key, number in keys.items() if number > 1] == []
 
@@ -435,7 +436,7 @@ def test_every_car_goes_through_all_poses(window):
         window.document.set_rack(0.0)
 
 
-# --- when something goes wrong ---------------------------------------------------------------------
+# --- when something goes wrong -----------------------------------------------------------
 
 
 def test_an_unexpected_error_shows_a_calm_message_and_the_window_lives(
