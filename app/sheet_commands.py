@@ -46,7 +46,7 @@ class SheetCommands(QObject):
         cut = menu.addMenu("Full-size pattern as &drawing")
         commands.add(cut, "pattern dxf", "&DXF…", partial(self.save_drawing, "dxf"))
         commands.add(cut, "pattern svg", "&SVG…", partial(self.save_drawing, "svg"))
-        commands.add(menu, "set-out csv", "Set-out list as &CSV…", self.save_set_out)
+        commands.add(menu, "set-out csv", "Set-out list as CS&V…", self.save_set_out)
 
     def pages(self, name: str) -> Pages:
         """A sheet of the document as it stands, dated today."""

@@ -99,8 +99,7 @@ class MeasureSheetPanel(Card):
         row = self.model.row_of(name)
         if row is not None:
             self.table.setFocus(Qt.FocusReason.OtherFocusReason)
-            self.table.setCurrentIndex(self.model.index(row, 1))
-            self.table.edit(self.model.index(row, 1))
+            self.table.open_cell(self.model.index(row, 1))
 
     def _side_chosen(self, side: str) -> None:
         self.model.set_side("right" if side == "right" else "left")

@@ -4,7 +4,13 @@ from __future__ import annotations
 
 from PySide6.QtCore import QModelIndex, Qt
 from PySide6.QtGui import QKeyEvent, QKeySequence
-from PySide6.QtWidgets import QAbstractItemDelegate, QAbstractItemView, QApplication, QTableView
+from PySide6.QtWidgets import (
+    QAbstractItemDelegate,
+    QAbstractItemView,
+    QApplication,
+    QTableView,
+    QWidget,
+)
 
 from app.panels.measure_model import MeasureModel
 
@@ -28,6 +34,12 @@ class SheetTable(QTableView):
             | QAbstractItemView.EditTrigger.AnyKeyPressed
         )
         self.setHorizontalScrollMode(QAbstractItemView.ScrollMode.ScrollPerPixel)
+
+    def open_cell(self, index: QModelIndex) -> None:
+        """Go to a cell and open it for typing; one that is open already stays as it is."""
+        self.setCurrentIndex(index)
+        if self.state() != self.State.EditingState:
+            self.edit(index)
 
     # --- where the keys go ----------------------------------------------------------
 
@@ -72,17 +84,20 @@ class SheetTable(QTableView):
         self.setTabKeyNavigation(True)
         return moved
 
-    def closeEditor(self, editor: object, hint: QAbstractItemDelegate.EndEditHint) -> None:
+    def closeEditor(self, editor: QWidget, hint: QAbstractItemDelegate.EndEditHint) -> None:
         hints = QAbstractItemDelegate.EndEditHint
         start = self.currentIndex()
         if hint == hints.SubmitModelCache:
-            super().closeEditor(editor, hints.NoHint)  # type: ignore[arg-type]
-            self._go(self._below(start), start)
+            # Also said when the cell is left for another one: then the cursor is there already.
+            left = self.indexAt(editor.geometry().center()) != start
+            super().closeEditor(editor, hints.NoHint)
+            if not left:
+                self._go(self._below(start), start)
         elif hint in (hints.EditNextItem, hints.EditPreviousItem):
-            super().closeEditor(editor, hints.NoHint)  # type: ignore[arg-type]
+            super().closeEditor(editor, hints.NoHint)
             self._go(self._next_editable(start, 1 if hint == hints.EditNextItem else -1), start)
         else:
-            super().closeEditor(editor, hint)  # type: ignore[arg-type]
+            super().closeEditor(editor, hint)
 
     def _go(self, to: QModelIndex, start: QModelIndex) -> None:
         """Go on from a cell, unless what was typed there has to be mended first."""

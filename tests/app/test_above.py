@@ -402,8 +402,9 @@ def test_a_drag_never_waits_for_the_plan(window, qtbot, monkeypatch):
         asked.append(layout)
         return plan_figures(layout, *args, **kwargs)
 
-    monkeypatch.setattr(plan_watch, "plan_figures", counted)
     window.show_floor("above")
+    figures_of(window, qtbot)
+    monkeypatch.setattr(plan_watch, "plan_figures", counted)
     view = window.floor
     start = view.scene.places[OUTER]
     end = pull(view, start, (start[0] - 20.0, start[1] + 10.0))

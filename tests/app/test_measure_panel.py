@@ -127,7 +127,7 @@ def test_tab_past_the_last_cell_leaves_the_table(qtbot, document):
     holder.resize(420, 600)
     holder.show()
     holder.activateWindow()
-    qtbot.waitExposed(holder)
+    qtbot.waitUntil(holder.isActiveWindow)
     choose(panel, "center of gravity height", 1)
     assert panel.table.hasFocus()
     QTest.keyClick(panel.table, KEY.Key_Tab)
@@ -312,3 +312,18 @@ def test_every_car_has_its_sheet(qtbot, qapp, name):
     panel.grab()
     names = {row for row in panel.model.rows if isinstance(row, str)}
     assert {nail for side, nail in document.layout.nails()} == names
+
+
+def test_a_nail_typed_twice_keeps_its_open_cell(qtbot, document):
+    panel, elsewhere = MeasureSheetPanel(document), QLineEdit()
+    for widget in (panel, elsewhere):
+        qtbot.addWidget(widget)
+        widget.show()
+    # In a window behind another one the cell does not close when the table takes the focus.
+    elsewhere.activateWindow()
+    qtbot.waitUntil(elsewhere.isActiveWindow)
+    for _ in range(2):
+        panel.type_place("left", "tie rod inner")
+        assert panel.table.state() == panel.table.State.EditingState
+    panel.type_place("left", "wheel center")
+    assert panel.table.currentIndex().row() == panel.model.row_of("wheel center")

@@ -387,31 +387,3 @@ def test_finer_rows_reproduce_cubics_and_spread_what_is_missing():
 
 
 # --- speed -------------------------------------------------------------------------------
-
-
-@pytest.mark.speed
-def test_coarse_zone_fits_a_frame_and_the_full_grid_costs_little():
-    import statistics
-    import time
-
-    def spent(work) -> float:
-        times = []
-        for _ in range(25):
-            start = time.perf_counter()
-            work()
-            times.append(time.perf_counter() - start)
-        return statistics.median(times)
-
-    solution = solve(CARS["healthy-roadster"])
-    rack_zone_of(solution, "left")
-    # About 0.8 ms on an idle core; room for a busy machine.
-    assert spent(lambda: rack_zone_of(solution, "left")) < 4e-3
-    rng = np.random.default_rng(1)
-    y, x = rng.normal(size=(2, 96 * 96 * 41))
-    known = spent(lambda: np.arctan2(y, x))
-    state = solution.left
-    motion = held_travel(state.corner, RELATIVE)
-    best = state.pivots.place("best fit")
-    full = spent(lambda: rack_zone(
-        state.corner, motion, 0.002, center=best, half_size=(20.0, 5.0), steps=(96, 96)))
-    assert full < 3.0 * known
