@@ -55,16 +55,16 @@ def read(path: Path, parent: QWidget) -> Job | None:
     try:
         return open_job(path)
     except OSError as error:
-        faults = [sentence(error)]
+        faults = [sentence(error, reading=True)]
     except ValueError as error:
         faults = list(getattr(error, "faults", None) or [str(error)])
     show_faults(parent, f"“{path.name}” can't be opened. Nothing was changed.", faults)
     return None
 
 
-def sentence(error: Exception) -> str:
+def sentence(error: Exception, *, reading: bool = False) -> str:
     """Why the system refused a file, as a sentence."""
-    reason = plain_reason(error)
+    reason = plain_reason(error, reading=reading)
     return f"{reason[:1].upper()}{reason[1:]}."
 
 

@@ -202,7 +202,8 @@ class _Bench:
         self._stop, self.stopped = stop, False
         self.own = layout.side(side)
         self.travel = np.linspace(-span, span, SWEEP_STEPS)
-        self.tolerance = toe_angle(self.own, tolerance(layout, "toe range"))
+        # A limit below nothing can't be met, and asks no less than one of nothing.
+        self.tolerance = max(0.0, toe_angle(self.own, tolerance(layout, "toe range")))
         self.kinds = allowed_kinds(layout, side, allowances)
         self.present = self._range_of(self.own)
         self._far: dict[float, float | None] = {}
@@ -229,9 +230,7 @@ class _Bench:
         return self.stopped
 
     def _range_of(self, side: Side) -> float | None:
-        corner = Corner.of(side)
-        motion = held_travel(corner, self.travel)
-        value = float(toe_range(toe_of(motion, corner, corner.tie_inner[1:]))[0])
+        value = float(toe_range(_toe_curve(side, self.travel)))
         return value if math.isfinite(value) else None
 
     # --- what the far side keeps --------------------------------------------------------------
@@ -364,8 +363,7 @@ class _Bench:
         return FixList(tuple(out), self.present, self.tolerance, trouble, done)
 
     def _fix(self, candidate: _Candidate, car: Layout, costs: Costs) -> Fix:
-        corner = Corner.of(car.side(self.side))
-        toe = toe_of(held_travel(corner, self.travel), corner, corner.tie_inner[1:])[0]
+        toe = _toe_curve(car.side(self.side), self.travel)
         parts = [move.text(self.layout, self.side) for move in candidate.moves]
         text = ", and ".join([parts[0], *(part[0].lower() + part[1:] for part in parts[1:])])
         return Fix(
@@ -380,6 +378,13 @@ class _Bench:
             toe=toe,
             costs=costs,
         )
+
+
+def _toe_curve(side: Side, travel: Array) -> Array:
+    """Toe (n,), rad, through ``travel`` (n,) mm with the steering centered; NaN where none is."""
+    corner = Corner.of(side)
+    with np.errstate(all="ignore"):
+        return np.asarray(toe_of(held_travel(corner, travel), corner, corner.tie_inner[1:])[0])
 
 
 def _made(layout: Layout, side: SideName, moves: Iterable[ShopMove]) -> Layout | None:

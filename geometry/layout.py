@@ -227,6 +227,10 @@ class Loads:
     rear_track: float | None = None
 
 
+LONGEST_NAME = 200
+"""Letters in the name of a no-go shape, at most."""
+
+
 @dataclass(frozen=True)
 class NoGo:
     """An outline nothing may enter, mm, on one floor.

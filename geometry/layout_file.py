@@ -16,6 +16,7 @@ from typing import Any
 
 from geometry import records
 from geometry.layout import (
+    LONGEST_NAME,
     RELAY_POINTS,
     SIDE_POINTS,
     SIDES,
@@ -164,7 +165,7 @@ _LOADS = Record(
 _NO_GO = Record(
     NoGo,
     (
-        Field("name", "name", Text(200)),
+        Field("name", "name", Text(LONGEST_NAME)),
         Field("outline", "outline", Items(Pair(), least=3)),
         Field("view", "view", Choice(("front", "above")), "front"),
         Field("side", "side", Maybe(Choice(SIDES)), None),

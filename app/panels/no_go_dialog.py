@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import replace
 from pathlib import Path
 
@@ -24,10 +25,12 @@ from PySide6.QtWidgets import (
     QWidget,
 )
 
+from app.background import Background
 from app.document import Document
-from geometry.layout import Layout, NoGo, SideName
+from geometry.layout import LONGEST_NAME, Layout, NoGo, SideName
 from geometry.lengths import format_exact, parse_length
-from geometry.outlines import OutlineError, read_outlines
+from geometry.outlines import Outline, OutlineError, read_outlines
+from geometry.output_file import plain_reason
 
 _SIDES: tuple[tuple[str, SideName | None], ...] = (
     ("both sides, mirrored", None), ("left side", "left"), ("right side", "right"),
@@ -45,6 +48,8 @@ class NoGoDialog(QDialog):
         self._layout: Layout = document.settled_layout()
         self.shapes: list[NoGo] = list(self._layout.no_go)
         self._filling = False
+        self._reading = Background(self, wait_ms=1)
+        self._reading.answered.connect(self._take_outlines)
         across = QHBoxLayout()
         across.addLayout(self._list_column(), 2)
         across.addLayout(self._shape_column(), 3)
@@ -57,6 +62,7 @@ class NoGoDialog(QDialog):
         buttons = QDialogButtonBox(
             QDialogButtonBox.StandardButton.Ok | QDialogButtonBox.StandardButton.Cancel
         )
+        self._ok = buttons.button(QDialogButtonBox.StandardButton.Ok)
         buttons.accepted.connect(self._accept)
         buttons.rejected.connect(self.reject)
         column.addWidget(buttons)
@@ -83,6 +89,7 @@ class NoGoDialog(QDialog):
         column = QVBoxLayout()
         form = QFormLayout()
         self.name = QLineEdit()
+        self.name.setMaxLength(LONGEST_NAME)
         self.view = QComboBox()
         for key, words in _VIEWS:
             self.view.addItem(words, key)
@@ -226,18 +233,25 @@ class NoGoDialog(QDialog):
             self.import_from(Path(name))
 
     def import_from(self, path: Path) -> None:
-        """Add every closed outline of a DXF file, named by its layer."""
-        try:
-            outlines = read_outlines(path)
-        except OutlineError as reason:
-            self.reason.setText(f"“{path.name}”: {reason}")
-            return
-        except OSError as error:
-            self.reason.setText(f"“{path.name}” can't be read: {error.strerror or error}.")
+        """Add every closed outline of a DXF file, named by its layer, once it is read."""
+        self.reason.setText(f"Reading “{path.name}”…")
+        self._ok.setEnabled(False)
+        self._reading.ask(lambda stopped: _read_outlines(path, stopped))
+
+    def _take_outlines(self, outlines: list[Outline] | str) -> None:
+        """A drawing is read; a text says why it could not be."""
+        self._ok.setEnabled(True)
+        if isinstance(outlines, str):
+            self.reason.setText(outlines)
             return
         for layer, outline in outlines:
             self.shapes.append(NoGo(layer, outline, side="left"))
         self._fill_list(len(self.shapes) - 1)
+
+    def done(self, result: int) -> None:
+        """Closing leaves no drawing being read."""
+        self._reading.finish()
+        super().done(result)
 
     def _accept(self) -> None:
         if self.reason.text():
@@ -245,3 +259,13 @@ class NoGoDialog(QDialog):
         layout = replace(self._layout, no_go=tuple(self.shapes))
         self._document.apply_layout("change no-go shapes", layout)
         self.accept()
+
+
+def _read_outlines(path: Path, stopped: Callable[[], bool]) -> list[Outline] | str:
+    """On a worker: a drawing's outlines, or why there are none."""
+    try:
+        return read_outlines(path, stopped)
+    except OutlineError as reason:
+        return f"“{path.name}”: {reason}"
+    except OSError as error:
+        return f"“{path.name}” can't be read: {plain_reason(error, reading=True)}."

@@ -173,7 +173,11 @@ def test_outlines_come_from_a_dxf_in_true_size(qtbot, document, tmp_path):
     drawing.saveas(path)
     dialog = NoGoDialog(document)
     qtbot.addWidget(dialog)
+    before = len(dialog.shapes)
     dialog.import_from(path)
+    assert "Reading" in dialog.reason.text() and not dialog._ok.isEnabled()
+    qtbot.waitUntil(lambda: len(dialog.shapes) == before + 1, timeout=10_000)
+    assert dialog.reason.text() == "" and dialog._ok.isEnabled()
     shape = dialog.shapes[-1]
     assert (shape.name, shape.side) == ("pan", "left")
     wanted = ((0.0, 127.0), (152.4, 127.0), (152.4, 203.2))
@@ -181,7 +185,11 @@ def test_outlines_come_from_a_dxf_in_true_size(qtbot, document, tmp_path):
         assert corner == pytest.approx(place, abs=1e-9)
     (tmp_path / "no.dxf").write_text("nothing")
     dialog.import_from(tmp_path / "no.dxf")
-    assert "not a DXF drawing" in dialog.reason.text()
+    qtbot.waitUntil(lambda: "not a DXF drawing" in dialog.reason.text(), timeout=10_000)
+    dialog.import_from(tmp_path / "gone.dxf")
+    qtbot.waitUntil(lambda: "gone.dxf" in dialog.reason.text(), timeout=10_000)
+    qtbot.waitUntil(dialog._ok.isEnabled, timeout=10_000)
+    assert "can't be read: it is not there" in dialog.reason.text()
 
 
 def test_the_car_goes_over_a_bump_and_comes_back(qtbot, document):

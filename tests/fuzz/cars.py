@@ -13,7 +13,6 @@ from __future__ import annotations
 
 import argparse
 import math
-import re
 import sys
 import time
 import traceback
@@ -52,24 +51,14 @@ from geometry.springs import spring_motion
 from geometry.standing import standing
 from geometry.turn_words import turn_words
 from geometry.zones import rack_zone_of
+from tests.fuzz import car_steps
+from tests.fuzz.holding import FaultError, finite, hold, plain
 from tests.fuzz.strange_cars import Batch, batch, car
 
 BATCH = 250
 TRAVELS = np.array([-80.0, -20.0, 0.0, 20.0, 80.0])
 LENGTH_SHARE = 1e-6
 """How far a rigid part's length may be off, as a share of the corner's whole size."""
-
-BAD_WORDS = re.compile(r"\b((?i:nan|inf|infinity)|None)\b|∞|(?<![\d.])[-−]0(\.0*)?(?![.\d/])")
-
-
-class FaultError(AssertionError):
-    """Something that must not be; the message says what."""
-
-
-def hold(true: bool, words: str) -> None:
-    """Raise FaultError unless ``true``."""
-    if not true:
-        raise FaultError(words)
 
 
 # --- corners by the batch --------------------------------------------------------------
@@ -167,24 +156,6 @@ def check_ride(corner: Corner, ride: Poses) -> None:
 
 
 # --- whole cars ---------------------------------------------------------------------------
-
-
-def plain(text: object) -> None:
-    """No number that isn't one in anything a person reads."""
-    words = str(text)
-    hold(not BAD_WORDS.search(words), f"said {words!r}")
-
-
-def finite(value: Any, where: str = "figures") -> None:
-    """Every number in a JSON-like tree is finite."""
-    if isinstance(value, dict):
-        for key, inner in value.items():
-            finite(inner, f"{where} > {key}")
-    elif isinstance(value, list | tuple):
-        for inner in value:
-            finite(inner, where)
-    elif isinstance(value, float):
-        hold(math.isfinite(value), f"{where} is {value}")
 
 
 def check_car(layout: Layout, rng: np.random.Generator) -> None:
@@ -332,7 +303,8 @@ def _sketched(layout: Layout, solution: Solution, rng: np.random.Generator) -> N
 
 STEPS: list[Callable[[Layout, Solution, np.random.Generator], None]] = [
     _readouts, _findings, _figures, _drawn, _pivots, _parts, _turned, _drops, _room, _file,
-    _zones, _sketched,
+    _zones, _sketched, car_steps.on_paper, car_steps.leaned, car_steps.lock_to_lock,
+    car_steps.mended,
 ]  # fmt: skip
 
 

@@ -1,4 +1,4 @@
-"""Bad input never hurts: damaged layout files and measure sheets, by the hundred thousand.
+"""Bad input never hurts: damaged layouts, measure sheets and drawings, by the hundred thousand.
 
     python -m tests.fuzz.readers                       # 100,000 inputs for each reader
     python -m tests.fuzz.readers --count 2000 --reader sheet
@@ -12,22 +12,26 @@ documented kind in plain sentences; anything else is a fault.
 from __future__ import annotations
 
 import argparse
+import logging
 import os
+import re
 import subprocess
 import sys
 import tempfile
 import time
 from collections.abc import Callable
+from dataclasses import replace
 from pathlib import Path
 from typing import Any
 
 from hypothesis import HealthCheck, Phase, given, seed, settings
 from hypothesis import strategies as st
 
-from geometry.layout import SIDES, Job, needed_points
+from geometry.layout import SIDES, Job, NoGo, needed_points
 from geometry.layout_file import LayoutFileError, job_from_text, job_to_text
 from geometry.measure_sheet import MeasureSheetError, measure_sheet_from_text
 from geometry.open_file import open_job
+from geometry.outlines import OutlineError, read_outlines
 from geometry.text_file import TextFileError
 from tests.fuzz.damage import (
     ENCODINGS,
@@ -40,6 +44,8 @@ from tests.fuzz.damage import (
     damaged,
     encoded,
 )
+from tests.fuzz.drawings import damaged_drawing
+from tests.sample_cars import SAMPLES
 
 SLOW_SECONDS = 5.0
 """More time than one input of at most a megabyte may take."""
@@ -58,6 +64,11 @@ def check_refusal(error: Any) -> None:
         assert len(fault) <= FAULT_LETTERS, len(fault)
         assert fault.isprintable(), repr(fault)
         fault.encode("utf-8")
+
+
+def check_sentence(words: str) -> None:
+    """A refusal of one sentence or two on one line."""
+    assert re.fullmatch(r"[A-Z].{5,200}\.", words), repr(words)
 
 
 def check_job(job: Job) -> None:
@@ -102,6 +113,27 @@ def check_file(data: bytes) -> bool:
         path.unlink(missing_ok=True)
 
 
+def check_outlines(text: str) -> bool:
+    """True if a drawing's outlines were read, all of them shapes a layout file takes."""
+    path = Path(tempfile.gettempdir()) / f"bobline-fuzz-{os.getpid()}.dxf"
+    # The drawing reader tells a log of each thing it mends.
+    logging.disable(logging.CRITICAL)
+    begun = time.process_time()
+    try:
+        path.write_text(text, encoding="utf-8", errors="surrogatepass")
+        shapes = tuple(NoGo(name, corners) for name, corners in read_outlines(path))
+    except OutlineError as refusal:
+        check_sentence(str(refusal))
+        return False
+    finally:
+        path.unlink(missing_ok=True)
+        logging.disable(logging.NOTSET)
+        took = time.process_time() - begun
+        assert took < SLOW_SECONDS, f"{took:.1f} s"
+    check_job(Job(replace(SAMPLES["healthy-roadster"].planned, no_go=shapes)))
+    return True
+
+
 # --- by hypothesis ---------------------------------------------------------------------
 
 steps = st.lists(
@@ -112,6 +144,7 @@ steps = st.lists(
     max_size=4,
 )
 layout_texts = st.builds(damaged, st.sampled_from(LAYOUT_TEXTS), steps)
+drawing_texts = st.builds(damaged_drawing, st.integers(0, PLACES), steps)
 sheet_texts = st.builds(damaged, st.sampled_from(SHEET_TEXTS), steps)
 files = st.builds(
     encoded, st.one_of(layout_texts, sheet_texts), st.integers(0, len(ENCODINGS) - 1)
@@ -121,6 +154,7 @@ READERS: dict[str, tuple[Callable[[Any], bool], st.SearchStrategy[Any]]] = {
     "layout": (check_layout, layout_texts),
     "sheet": (check_sheet, sheet_texts),
     "file": (check_file, files),
+    "outlines": (check_outlines, drawing_texts),
 }
 
 
@@ -154,14 +188,21 @@ def steered(reader: str, data: bytes) -> Any:
     kind, rest = (data[0] if data else 0), data[1:]
     if kind % 4 == 3:
         return rest if reader == "file" else rest.decode("utf-8", "surrogateescape")
+    if reader == "outlines":
+        return damaged_drawing(kind, _steps_of(rest))
     texts = SHEET_TEXTS if reader == "sheet" or (reader == "file" and kind % 2) else LAYOUT_TEXTS
     text = texts[kind // 4 % len(texts)]
-    damages: list[Step] = []
-    for at in range(0, min(len(rest) - 4, 30), 5):
-        piece = rest[at : at + 5]
-        damages.append((piece[0], int.from_bytes(piece[1:4], "big"), piece[4]))
-    text = damaged(text, damages)
+    text = damaged(text, _steps_of(rest))
     return encoded(text, rest[-1] if rest else 0) if reader == "file" else text
+
+
+def _steps_of(data: bytes) -> list[Step]:
+    """Damages from a fuzzer's bytes."""
+    damages: list[Step] = []
+    for at in range(0, min(len(data) - 4, 30), 5):
+        piece = data[at : at + 5]
+        damages.append((piece[0], int.from_bytes(piece[1:4], "big"), piece[4]))
+    return damages
 
 
 def run_guided(name: str, seconds: int, chosen: int) -> None:
@@ -170,7 +211,7 @@ def run_guided(name: str, seconds: int, chosen: int) -> None:
 
     for module in ("geometry.layout_file", "geometry.records", "geometry.measure_sheet",
                    "geometry.sheet_rows", "geometry.lengths", "geometry.text_file",
-                   "geometry.open_file"):  # fmt: skip
+                   "geometry.open_file", "geometry.outlines"):  # fmt: skip
         for value in vars(sys.modules[module]).values():
             if callable(value) and getattr(value, "__module__", "") == module:
                 _instrument(atheris, value)

@@ -6,14 +6,8 @@ import numpy as np
 import pytest
 
 from geometry.corner import Corner
-from tests.fuzz.cars import (
-    BAD_WORDS,
-    FaultError,
-    cars_run,
-    check_poses,
-    corners_run,
-    finite,
-)
+from tests.fuzz.cars import cars_run, check_poses, corners_run
+from tests.fuzz.holding import BAD_WORDS, FaultError, finite
 from tests.fuzz.strange_cars import KINDS, RECIPES, SOUND, batch
 from tests.sample_cars import CARS
 

@@ -367,3 +367,22 @@ def test_degenerate_cars_get_a_sentence_or_fixes_that_hold(name: str):
         assert found is not None
         assert found.trouble.endswith(".") or found.fixes
         assert other_side(side) != side and "nan" not in found.trouble.lower()
+
+
+@pytest.mark.parametrize("limit", [0.0, -1.0])
+def test_a_toe_limit_of_nothing_or_less_still_gives_fixes(limit):
+    # Found by the strange cars: no size was within reach of a limit below nothing.
+    car = replace(FAULTY["rack-set-low"], tolerances={"toe range": limit})
+    found = fix_list(car)
+    assert found is not None and found.fixes
+    assert not any(fix.cures and fix.remains > 0.0 for fix in found.fixes)
+
+
+@pytest.mark.filterwarnings("error")
+def test_a_tie_rod_of_no_leverage_is_answered_in_words():
+    # Found by the strange cars: its turning angle is nothing over nothing.
+    car = FAULTY["rack-set-low"]
+    side = car.left
+    points = {**side.points, TIE_OUTER: side[LOWER_BALL], TIE_INNER: side[LOWER_BALL]}
+    found = fix_list(replace(car, left=replace(side, points=points)))
+    assert found is not None and found.trouble.endswith(".")
