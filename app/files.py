@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import errno
 import re
 from pathlib import Path
 
@@ -182,6 +183,8 @@ def _over_open(path: Path, parent: QWidget) -> bool:
 def _write(document: Document, path: Path, parent: QWidget) -> bool:
     document.cancel_preview()
     try:
+        if path == document.path and document.file.drive_has_gone():
+            raise OSError(errno.ENODEV, "the drive has gone", str(path))
         write_job(path, document.job)
     except OSError as error:
         QMessageBox.warning(

@@ -63,11 +63,13 @@ class HomeFile:
         self.path: Path | None = None
         self.mark: FileMark | None = None
         self._claim: ProcessLock | None = None
+        self._drive: int | None = None
 
     def settle(self, path: Path | None, mark: FileMark | None) -> None:
         """Live in ``path`` from now on (None: in no file yet)."""
         self.leave()
         self.path, self.mark = path, mark
+        self._drive = None if path is None else _drive_of(path)
         if path is not None:
             claim = ProcessLock(_claim_path(path))
             # Without the claim all goes on; another window just isn't warned.
@@ -91,9 +93,27 @@ class HomeFile:
         except OSError:
             return False
 
+    def drive_has_gone(self) -> bool:
+        """True if the file is not there and its folder now lies on another drive.
+
+        A stick that was pulled out may leave an empty folder behind; what is written there
+        would be hidden as soon as the stick is back.
+        """
+        if self.path is None or self._drive is None or self.path.exists():
+            return False
+        return _drive_of(self.path) not in (None, self._drive)
+
     def changed_outside(self) -> bool:
         """True if another program has changed the file since it was read or written here."""
         return self.path is not None and self.mark is not None and self.mark.differs(self.path)
+
+
+def _drive_of(path: Path) -> int | None:
+    """What the system calls the drive that a file's folder is on; None if there is no folder."""
+    try:
+        return path.parent.stat().st_dev
+    except OSError:
+        return None
 
 
 def _claim_path(path: Path) -> Path:

@@ -42,6 +42,7 @@ def run(path: str | None) -> int:
     signal.signal(signal.SIGINT, signal.SIG_DFL)
     document = Document(first_job())
     window = MainWindow(document)
+    trouble.keep = window.recovery.look
     window.show()
     # After the window is up, so that what there is to ask or tell has a place.
     QTimer.singleShot(0, lambda: _begin(window, path))

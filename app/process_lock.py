@@ -53,9 +53,11 @@ class ProcessLock:
                 os.close(descriptor)
                 return False
             if self._is_still_there(descriptor):
-                os.ftruncate(descriptor, 0)
-                os.lseek(descriptor, 0, os.SEEK_SET)
-                os.write(descriptor, f"{os.getpid()}\n".encode())
+                # The number is for people to read; the lock holds on a full disk without it.
+                with contextlib.suppress(OSError):
+                    os.ftruncate(descriptor, 0)
+                    os.lseek(descriptor, 0, os.SEEK_SET)
+                    os.write(descriptor, f"{os.getpid()}\n".encode())
                 self._descriptor = descriptor
                 return True
             os.close(descriptor)

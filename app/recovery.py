@@ -184,7 +184,7 @@ class Recovery(QObject):
 
     def look(self) -> None:
         """Keep what stands a moment from now, unless that is on its way already."""
-        if not self._timer.isActive():
+        if not self._ended and not self._timer.isActive():
             self._timer.start()
 
     def _keep(self) -> None:

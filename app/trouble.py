@@ -3,19 +3,27 @@
 from __future__ import annotations
 
 import sys
+import time
 import traceback
+from collections.abc import Callable
 from types import TracebackType
 
 from PySide6.QtWidgets import QApplication, QMessageBox
 
 from app.resources import __version__
 
+QUIET_SECONDS = 3.0
+"""The same error again within this time is kept but not told: it would bury the window."""
+
 
 class Trouble:
     """Catches what nothing else caught and tells the person once, not a hundred times."""
 
     def __init__(self) -> None:
+        self.keep: Callable[[], None] = lambda: None
+        """Sees to it that the work is kept against worse; called at each error."""
         self._showing = False
+        self._last: dict[str, float] = {}
         self.reports: list[str] = []
 
     def install(self) -> None:
@@ -36,7 +44,9 @@ class Trouble:
         report += "".join(traceback.format_exception(kind, error, trace))
         self.reports.append(report)
         print(report, file=sys.stderr)
-        if self._showing or QApplication.instance() is None:
+        self.keep()
+        again = self._comes_again(report)
+        if self._showing or again or QApplication.instance() is None:
             return
         self._showing = True
         try:
@@ -52,3 +62,12 @@ class Trouble:
             box.exec()
         finally:
             self._showing = False
+            self._last[report] = time.monotonic()
+
+    def _comes_again(self, report: str) -> bool:
+        """True for an error that goes on and on, as one in drawing the floor: it was told."""
+        now = time.monotonic()
+        before = self._last.get(report)
+        if before is not None:
+            self._last[report] = now
+        return before is not None and now - before < QUIET_SECONDS

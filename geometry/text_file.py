@@ -6,6 +6,7 @@ import contextlib
 import errno
 import os
 import stat
+import sys
 import tempfile
 from pathlib import Path
 
@@ -89,6 +90,8 @@ def write_file(path: os.PathLike[str] | str, data: bytes) -> None:
     with contextlib.suppress(FileNotFoundError):
         mode = stat.S_IMODE(target.stat().st_mode)
         if not os.access(target, os.W_OK):
+            if _can_only_be_read(target.parent):
+                raise OSError(errno.EROFS, "the disk can only be read", str(target))
             raise PermissionError(errno.EPERM, "the file is write-protected", str(target))
     descriptor, temporary = tempfile.mkstemp(
         dir=target.parent, prefix=f".{target.name[:40]}.", suffix=".part"
@@ -109,6 +112,13 @@ def write_file(path: os.PathLike[str] | str, data: bytes) -> None:
             os.unlink(temporary)
         raise
     _sync_folder(target.parent)
+
+
+def _can_only_be_read(folder: Path) -> bool:
+    """True for a folder on a disk that takes no writing at all."""
+    if sys.platform == "win32":
+        return False
+    return bool(os.statvfs(folder).f_flag & os.ST_RDONLY)
 
 
 def _sync_folder(folder: Path) -> None:

@@ -27,11 +27,11 @@ ELSEWHERE = Point(350.0, 390.0, 0.0)
 
 
 class Child:
-    """A window dragging a nail in another process."""
+    """A window in another process that is in the middle of a drag, or of saving."""
 
-    def __init__(self, tmp_path: Path, opened: Path | None = None) -> None:
+    def __init__(self, tmp_path: Path, opened: Path | None, doing: str) -> None:
         self.told = tmp_path / "told"
-        words = [sys.executable, "-m", "tests.app.dragging_window", str(self.told)]
+        words = [sys.executable, "-m", f"tests.app.{doing}", str(self.told)]
         words += [str(opened)] if opened else []
         self.process = subprocess.Popen(
             words, cwd=ROOT, env={**os.environ, "QT_QPA_PLATFORM": "offscreen"},
@@ -59,8 +59,8 @@ class Child:
 def start(tmp_path):
     children = []
 
-    def begin(opened: Path | None = None) -> Child:
-        children.append(Child(tmp_path, opened))
+    def begin(opened: Path | None = None, doing: str = "dragging_window") -> Child:
+        children.append(Child(tmp_path, opened, doing))
         return children[-1]
 
     yield begin
@@ -97,6 +97,56 @@ def test_a_window_killed_in_a_drag_gives_all_of_it_back(
     assert job_to_text(SAMPLES["healthy-roadster"]) != home.read_text() == stood
     window.close()
     assert list(recovery_folder().iterdir()) == []
+
+
+@posix
+def test_a_window_killed_while_saving_leaves_the_old_file_and_gives_the_new_work_back(
+    start, make_window, tmp_path, answers
+):
+    home = tmp_path / "car.bobline"
+    write_job(home, SAMPLES["healthy-roadster"])
+    before = home.read_bytes()
+    child = start(home, "saving_window")
+    stood = child.wait()
+    child.kill()
+    assert home.read_bytes() == before
+
+    window = make_window(SAMPLES["strut-hatch"])
+    answers.press("Take it back")
+    window.offer_kept_work()
+    assert job_to_text(window.document.job) == stood
+    assert window.document.path == home
+    window.commands.save()
+    assert home.read_text() == stood
+    window.close()
+    assert list(recovery_folder().iterdir()) == []
+
+
+_WRITES = """
+import sys, itertools
+from geometry.layout_file import write_job
+from tests.sample_cars import SAMPLES
+jobs = itertools.cycle([SAMPLES["healthy-roadster"], SAMPLES["strut-hatch"]])
+for job in jobs:
+    write_job(sys.argv[1], job)
+    print(flush=True)
+"""
+
+
+@posix
+def test_a_program_killed_at_any_moment_of_its_writing_leaves_a_whole_file(tmp_path):
+    home = tmp_path / "car.bobline"
+    whole = {job_to_text(SAMPLES[name]) for name in ("healthy-roadster", "strut-hatch")}
+    for kill in range(3):
+        writer = subprocess.Popen(
+            [sys.executable, "-c", _WRITES, str(home)], cwd=ROOT, stdout=subprocess.PIPE
+        )
+        writer.stdout.read(5)
+        time.sleep(0.0037 * kill)
+        writer.send_signal(signal.SIGKILL)
+        writer.wait()
+        writer.stdout.close()
+        assert home.read_text() in whole
 
 
 @posix

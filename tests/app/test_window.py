@@ -483,6 +483,42 @@ def test_errors_on_top_of_each_other_show_one_message(window, answers, monkeypat
     assert QApplication.activeModalWidget() is None
 
 
+def test_an_error_that_goes_on_and_on_is_told_once_and_the_work_is_kept(
+    window, answers, monkeypatch, qtbot
+):
+    trouble = Trouble()
+    monkeypatch.setattr(sys, "excepthook", sys.excepthook)
+    trouble.install()
+    trouble.keep = window.recovery.look
+    window.document.move_point("left", UPPER_INNER, ELSEWHERE)
+    window.document.edited.disconnect(window.recovery.look)
+    window.document.solved.disconnect(window.recovery.look)
+    window.recovery._timer.stop()
+
+    def fail() -> None:
+        raise RuntimeError("in drawing the floor")
+
+    again = QTimer(window)
+    again.timeout.connect(fail)
+    answers.press("OK")
+    again.start(10)
+    qtbot.waitUntil(lambda: answers.all_asked and len(trouble.reports) > 30)
+    assert QApplication.activeModalWidget() is None
+    assert len(answers.said) == 1
+    again.stop()
+    # Not by the change itself, whose way to the recovery file was cut.
+    qtbot.waitUntil(window.recovery.file.exists, timeout=4000)
+    window.document.edited.connect(window.recovery.look)
+    window.document.solved.connect(window.recovery.look)
+    # Another kind of error is told, and so is this one when it comes again much later.
+    monkeypatch.setattr("app.trouble.QUIET_SECONDS", 0.0)
+    answers.press("OK")
+    QTimer.singleShot(0, fail)
+    qtbot.waitUntil(lambda: answers.all_asked)
+    qtbot.wait(20)
+    assert len(answers.said) == 2
+
+
 def test_a_closed_window_leaves_no_thread_and_no_running_timer(make_window):
     before = set(threading.enumerate())
     window = make_window()
