@@ -30,6 +30,7 @@ class LayoutCommands(QObject):
             ("loads", "&Weights and springs…", self.loads, ""),
             ("no-go", "&No-go shapes…", self.no_go, ""),
             ("zone", "&Rack zone…", self.zone, "Ctrl+R"),
+            ("fixes", "F&ix list…", self.fixes, "Ctrl+F"),
         ):
             self._add(menu, name, words, act, keys)
         menu.addSeparator()
@@ -56,6 +57,14 @@ class LayoutCommands(QObject):
         from app.panels.rack_zone import RackZoneDialog
 
         dialog = RackZoneDialog(self.document, self.window)
+        dialog.setAttribute(Qt.WidgetAttribute.WA_DeleteOnClose)
+        dialog.show()
+
+    def fixes(self) -> None:
+        """The fix list in a window of its own beside the floor."""
+        from app.panels.fix_list import FixListDialog
+
+        dialog = FixListDialog(self.document, self.window)
         dialog.setAttribute(Qt.WidgetAttribute.WA_DeleteOnClose)
         dialog.show()
 

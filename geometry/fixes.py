@@ -85,7 +85,7 @@ class Fix:
     @property
     def remains(self) -> float:
         """The toe change left at the tire, mm per wheel."""
-        return float(toe_length(self.layout.side(self.side), self.toe_range))
+        return float(np.ptp(toe_length(self.layout.side(self.side), self.toe)))
 
     @property
     def notes(self) -> tuple[str, ...]:
@@ -205,7 +205,7 @@ class _Bench:
         # A limit below nothing can't be met, and asks no less than one of nothing.
         self.tolerance = max(0.0, toe_angle(self.own, tolerance(layout, "toe range")))
         self.kinds = allowed_kinds(layout, side, allowances)
-        self.present = self._range_of(self.own)
+        self.present = self._present_range(self.own)
         self._far: dict[float, float | None] = {}
         self.trouble = self._why_none()
 
@@ -229,7 +229,17 @@ class _Bench:
         self.stopped = self.stopped or (self._stop is not None and self._stop())
         return self.stopped
 
+    def _toe_through(self, side: Side) -> Array:
+        """Toe (n,), rad, through the travel, steering centered; NaN out of reach."""
+        poses = Corner.of(side).poses(self.travel)
+        return np.where(poses.assembles, poses.toe, np.nan)
+
+    def _present_range(self, side: Side) -> float | None:
+        value = float(np.ptp(self._toe_through(side)))
+        return value if math.isfinite(value) else None
+
     def _range_of(self, side: Side) -> float | None:
+        """The toe range by the quick motion that candidates are judged by, rad."""
         value = float(toe_range(_toe_curve(side, self.travel)))
         return value if math.isfinite(value) else None
 
@@ -363,7 +373,12 @@ class _Bench:
         return FixList(tuple(out), self.present, self.tolerance, trouble, done)
 
     def _fix(self, candidate: _Candidate, car: Layout, costs: Costs) -> Fix:
-        toe = _toe_curve(car.side(self.side), self.travel)
+        """A candidate with its figures from the full solve, as every other view has them."""
+        toe = self._toe_through(car.side(self.side))
+        own = float(np.ptp(toe))
+        far = other_side(self.side)
+        was, other = (self._present_range(one.side(far)) for one in (self.layout, car))
+        spoiled = was is not None and (other is None or other > max(was, self.tolerance))
         parts = [move.text(self.layout, self.side) for move in candidate.moves]
         text = ", and ".join([parts[0], *(part[0].lower() + part[1:] for part in parts[1:])])
         return Fix(
@@ -371,9 +386,9 @@ class _Bench:
             text=f"{text}.",
             layout=car,
             side=self.side,
-            toe_range=candidate.own,
-            other_range=candidate.other,
-            cures=candidate.judged <= self.tolerance,
+            toe_range=own,
+            other_range=other,
+            cures=own <= self.tolerance and not spoiled,
             travel=self.travel,
             toe=toe,
             costs=costs,

@@ -195,6 +195,26 @@ def allowed_kinds(layout: Layout, side: SideName, allowances: Allowances) -> tup
     return tuple(out)
 
 
+def steps_words(kind: Kind, units: UnitName) -> str:
+    """In which sizes a kind of move can be made, in words."""
+
+    def said(sizes: tuple[float, ...]) -> str:
+        texts = [format_length(size, units, 32) for size in sizes]
+        return f"{', '.join(texts[:-1])} and {texts[-1]} {units}" if len(texts) > 1 else (
+            f"{texts[0]} {units}"
+        )
+
+    if kind == "outer_spacer":
+        return f"stock spacers of {said(SPACERS[units][::-1])}, stacked"
+    if kind == "ball_joint":
+        return f"stock joints {said(TALLER)} taller"
+    if kind in ("upper_mount_height", "upper_mount_width"):
+        shim, hole = said((SHIM[units],)), said((HOLE[units],))
+        return f"shims in steps of {shim}, new holes in steps of {hole}"
+    step = STEP if kind in INNER_KINDS else COARSE_STEP
+    return f"in steps of {said((step[units],))}"
+
+
 def moved_nails(kind: Kind, side: Side) -> frozenset[str]:
     """The points that a kind of move takes from their places."""
     if kind in INNER_KINDS:

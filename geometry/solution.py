@@ -78,6 +78,12 @@ class CornerState:
         return float(droop), float(bump)
 
     @cached_property
+    def centered_toe(self) -> Array:
+        """Toe (n,), rad, through the sweep's travel with the rack centered; NaN out of reach."""
+        poses = self.corner.poses(self.sweep.travel) if np.any(self.shift) else self.sweep
+        return np.where(poses.assembles, poses.toe, np.nan)
+
+    @cached_property
     def pivots(self) -> InnerPivots:
         """Where the inner tie-rod pivot belongs, over the sweep's travel, rack centered."""
         return inner_pivots(self.corner, self.ride_view, self.sweep.travel)

@@ -184,8 +184,9 @@ def camber_gain(state: CornerState) -> float | None:
 
 def _toe_range(solution: Solution, side: SideName) -> float | None:
     state = solution.sides[side]
-    angle = state.pivots.ranges["as is"]
-    return None if angle is None else float(toe_length(state.side, angle))
+    lengths = toe_length(state.side, state.centered_toe)
+    change = float(lengths.max() - lengths.min())
+    return change if math.isfinite(change) else None
 
 
 def _arm_slope(solution: Solution, side: SideName) -> float | None:

@@ -10,7 +10,6 @@ import numpy as np
 from geometry import layout as names
 from geometry.finding_checks.finding import Cure, Finding, Severity, Subject
 from geometry.finding_checks.wording import TAPE
-from geometry.inner_pivot import toe_of
 from geometry.layout import MM_PER_INCH, Rack
 from geometry.linkage import Array
 from geometry.tolerances import toe_length
@@ -25,10 +24,8 @@ ALREADY_BEST = 0.9
 def check(subject: Subject) -> Iterator[Finding]:
     """The toe change over the chosen travel (rack centered), and the tie rod's aim."""
     state = subject.state
-    toe = toe_of(state.pivots.motion, state.corner, state.corner.tie_inner[1:])[0]
-    lengths = toe_length(state.side, toe)
     # Poses out of reach have no toe; the reach check speaks of them.
-    lengths = np.where(state.pivots.motion.assembles, lengths, np.nan)
+    lengths = toe_length(state.side, state.centered_toe)
     over_limit = False
     if bool(np.all(np.isfinite(lengths))):
         total = float(lengths.max() - lengths.min())
@@ -44,7 +41,7 @@ def _toe_words(subject: Subject, toe: float) -> str:
 
 def _first_bump(subject: Subject, lengths: Array) -> str:
     """The toe change in the first inch (or 25 mm) of bump, or as far as the travel goes."""
-    words, travel = subject.words, subject.state.pivots.motion.travel
+    words, travel = subject.words, subject.state.sweep.travel
     step = min(words.travel_step, subject.solution.span)
     start, end = np.interp([0.0, step], travel, lengths)
     where = "the first inch" if words.units == "in" else "the first 25 mm"
