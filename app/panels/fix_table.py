@@ -7,7 +7,7 @@ from collections.abc import Sequence
 
 import numpy as np
 from PySide6.QtCore import QSize, Qt
-from PySide6.QtGui import QIcon
+from PySide6.QtGui import QIcon, QResizeEvent
 from PySide6.QtWidgets import QAbstractItemView, QHeaderView, QTableWidget, QTableWidgetItem
 
 from app.panels.toe_picture import small_picture
@@ -53,7 +53,7 @@ class FixTable(QTableWidget):
         self.setTabKeyNavigation(False)
         header = self.horizontalHeader()
         header.setSectionResizeMode(QHeaderView.ResizeMode.ResizeToContents)
-        header.setSectionResizeMode(0, QHeaderView.ResizeMode.Stretch)
+        header.setSectionResizeMode(0, QHeaderView.ResizeMode.Fixed)
         header.setMinimumSectionSize(48)
         self.fixes: tuple[Fix, ...] = ()
 
@@ -88,7 +88,19 @@ class FixTable(QTableWidget):
                 self.setItem(row, column, item)
         self.blockSignals(blocked)
         self.setUpdatesEnabled(True)
+        self._share_width()
+
+    def _share_width(self) -> None:
+        """The words get what the figures leave, and never less than can be read."""
+        header = self.horizontalHeader()
+        others = sum(header.sectionSize(column) for column in range(1, self.columnCount()))
+        least = 44 * self.fontMetrics().averageCharWidth()
+        self.setColumnWidth(0, max(least, self.viewport().width() - others))
         self.resizeRowsToContents()
+
+    def resizeEvent(self, event: QResizeEvent) -> None:
+        super().resizeEvent(event)
+        self._share_width()
 
     @property
     def chosen(self) -> Fix | None:
