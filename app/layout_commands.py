@@ -30,6 +30,7 @@ class LayoutCommands(QObject):
             ("loads", "&Weights and springs…", self.loads, ""),
             ("no-go", "&No-go shapes…", self.no_go, ""),
             ("zone", "&Rack zone…", self.zone, "Ctrl+R"),
+            ("targets", "Tar&gets and pivot zone…", self.targets, "Ctrl+T"),
             ("fixes", "F&ix list…", self.fixes, "Ctrl+F"),
         ):
             self._add(menu, name, words, act, keys)
@@ -57,6 +58,14 @@ class LayoutCommands(QObject):
         from app.panels.rack_zone import RackZoneDialog
 
         dialog = RackZoneDialog(self.document, self.window)
+        dialog.setAttribute(Qt.WidgetAttribute.WA_DeleteOnClose)
+        dialog.show()
+
+    def targets(self) -> None:
+        """What is wanted of the car, and where a nail may sit for it, beside the floor."""
+        from app.panels.nail_zone import NailZoneDialog
+
+        dialog = NailZoneDialog(self.document, self.window.front, self.window)
         dialog.setAttribute(Qt.WidgetAttribute.WA_DeleteOnClose)
         dialog.show()
 

@@ -12,6 +12,7 @@ from itertools import pairwise
 
 import numpy as np
 import shapely
+import shapely.ops
 from shapely.geometry.base import BaseGeometry
 
 from geometry.layout import MM_PER_INCH, NoGo, SideName, UnitName
@@ -107,6 +108,12 @@ def _down_to_tape(mm: float, units: UnitName) -> str:
 def _said(mm: float, step: float, units: UnitName, denominator: int, least: str) -> str:
     steps = math.floor(mm / step + 1e-9)
     return format_length(steps * step, units, denominator, mark=True) if steps else least
+
+
+def way_into(zone: BaseGeometry, place: tuple[float, float]) -> tuple[float, float]:
+    """The shortest move (over, up), mm, that brings a place into a zone that isn't empty."""
+    _, nearest = shapely.ops.nearest_points(shapely.Point(place), zone)
+    return nearest.x - place[0], nearest.y - place[1]
 
 
 def room_in(zone: BaseGeometry, place: tuple[float, float]) -> Room | None:

@@ -185,6 +185,9 @@ class MarkItems:
             for kind in ("string rule", "curvature center", "best fit")
         }
         self.zones = {side: self._zone(scene) for side in SIDES}
+        # Hatched, to be told from a rack zone where both lie over each other.
+        self.nail_zone = self._zone(scene)
+        self.nail_zone.setZValue(ZONE_Z + 0.5)
         self._zones: dict[SideName, list[Array]] = {side: [] for side in SIDES}
 
     @staticmethod
@@ -209,6 +212,15 @@ class MarkItems:
             tint.setAlphaF(0.62)
             zone.setBrush(QBrush(tint))
             zone.setPen(pen(palette.zone_edge, 1.2 * ratio, (3.0, 2.0)))
+
+        self.nail_zone.setBrush(QBrush(QColor(palette.contact_string), Qt.BrushStyle.BDiagPattern))
+        self.nail_zone.setPen(pen(palette.contact_string, 2.0 * ratio))
+
+    def set_nail_zone(self, outlines: list[Array]) -> None:
+        """Hatch where one nail may sit: outlines (n, 2) on the floor."""
+        path = path_of(outlines, True)
+        path.setFillRule(Qt.FillRule.OddEvenFill)
+        self.nail_zone.setPath(path)
 
     def set_zone(self, side: SideName, outlines: list[Array]) -> None:
         """Tint where a side's inner tie-rod pivot may sit: outlines (n, 2) on the floor."""

@@ -25,7 +25,7 @@ from geometry.front_strings import (
     strings,
     tire_floor,
 )
-from geometry.layout import SIDES, SideName
+from geometry.layout import KNUCKLE_POINTS, SIDES, SideName
 from geometry.linkage import Array
 from geometry.solution import Solution
 from geometry.standing import XY, Standing, relay_standing, standing
@@ -104,6 +104,9 @@ class CarScene(QGraphicsScene):
     def set_zone(self, side: SideName, outlines: list[Array]) -> None:
         """Where a side's inner tie-rod pivot may sit, where this view shows that."""
 
+    def set_nail_zone(self, side: SideName, name: str, outlines: list[Array]) -> None:
+        """Where a nail may sit, where this view shows that."""
+
 
 class FloorScene(CarScene):
     """The car from the front, with its strings and centers."""
@@ -119,6 +122,7 @@ class FloorScene(CarScene):
         self._strings: list[String] = []
         self._tire_floor: tuple[XY, XY] | None = None
         self._zones: dict[SideName, list[Array]] = {}
+        self._nail_zone: tuple[SideName, str, list[Array]] | None = None
 
     def dress(self, palette: Palette, font: QFont, ratio: float) -> None:
         super().dress(palette, font, ratio)
@@ -152,6 +156,8 @@ class FloorScene(CarScene):
             mark.put(self.pivots.get(key))
         for side in self._zones:
             self._show_zone(side)
+        if self._nail_zone is not None:
+            self._show_nail_zone()
 
     def stretch(self, box: tuple[float, float, float, float]) -> None:
         """Clip the strings to what is in view, mm."""
@@ -168,6 +174,26 @@ class FloorScene(CarScene):
             outlines = self._zones.get(side, [])
             moved = [o * (stand.sign, 1.0) + stand.shift for o in outlines]
             self.marks.set_zone(side, moved)
+
+    def set_nail_zone(self, side: SideName, name: str, outlines: list[Array]) -> None:
+        """Where a nail may sit: outlines (n, 2) in side measure at ride height."""
+        self._nail_zone = (side, name, outlines) if outlines else None
+        self._show_nail_zone()
+
+    def _show_nail_zone(self) -> None:
+        """The zone goes with its nail; one on the knuckle is true at ride height alone."""
+        moved: list[Array] = []
+        if self._nail_zone is not None:
+            side, name, outlines = self._nail_zone
+            stand = self.stands.get(side)
+            if stand is not None and name in stand.points:
+                place = stand.state.side[name]
+                measured = np.array(stand.at(place.over, place.up))
+                shift = np.array(stand.points[name]) - measured
+                rides = name in KNUCKLE_POINTS and bool(np.any(np.abs(shift) > 1e-6))
+                if not rides:
+                    moved = [o * (stand.sign, 1.0) + shift for o in outlines]
+        self.marks.set_nail_zone(moved)
 
 
 def near(place: XY) -> bool:

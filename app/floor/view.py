@@ -187,6 +187,7 @@ class FloorView(QWidget):
         self.measuring.roll_up()
         self.scene.set_zone("left", [])
         self.scene.set_zone("right", [])
+        self.scene.set_nail_zone("left", "", [])
         self._stale = not self._awake
         if self._stale:
             self.canvas.fitted = True
@@ -380,6 +381,10 @@ class FloorView(QWidget):
         measure (over, up; mm); None or an empty list for none.
         """
         self.scene.set_zone(side, zone_outlines(polygons))
+
+    def set_nail_zone(self, side: SideName, name: str, polygons: object) -> None:
+        """Hatch where a nail may sit, in the same forms; None or an empty list for none."""
+        self.scene.set_nail_zone(side, name, zone_outlines(polygons))
 
     # --- the measuring tape -------------------------------------------------------------
 
