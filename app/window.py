@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from pathlib import Path
 
-from PySide6.QtCore import QByteArray, QEvent, Qt
+from PySide6.QtCore import QByteArray, QEvent, Qt, QTimer
 from PySide6.QtGui import (
     QCloseEvent,
     QDragEnterEvent,
@@ -226,7 +226,8 @@ class MainWindow(QMainWindow):
         super().changeEvent(event)
         # Python may be asked before the window is built.
         if event.type() == QEvent.Type.FontChange and getattr(self, "_shared_out", False):
-            self._share_out()
+            # The panels hear of it in no fixed order, so some still have their old letters.
+            QTimer.singleShot(0, self, self._share_out)
 
     def _guidance_line(self) -> QWidget:
         holder = QWidget()

@@ -26,7 +26,7 @@ from PySide6.QtWidgets import (
 from shiboken6 import isValid
 
 EVERY_MS = 4
-_PRINTER = ("rint", "Page setup")
+PRINTER = ("rint", "Page setup")
 """Buttons that need a printer, which there is none of."""
 _MOST_LOOKS = 6
 """A dialog that is still there after as many looks is sent away."""
@@ -149,7 +149,7 @@ class Answers(QObject):
         buttons = [
             b for b in dialog.findChildren(QAbstractButton)
             if b.isVisible() and b.isEnabled() and b.text() and not isinstance(b, QCheckBox)
-            and not any(word in b.text() for word in _PRINTER)
+            and not any(word in b.text() for word in PRINTER)
         ]
         if buttons and self._chance.random() < 0.75:
             button = self._chance.choice(buttons)

@@ -23,7 +23,7 @@ from PySide6.QtWidgets import (
 from app.document import Document
 from app.window import MainWindow
 from tests.app import hands
-from tests.fuzz.answers import TYPED, Answers
+from tests.fuzz.answers import PRINTER, TYPED, Answers
 
 _NEVER = ("&Quit", "&Print…")
 """Closing has an act of its own; nothing is sent to a printer."""
@@ -308,9 +308,11 @@ class Acts:
             dialog = self.chance.choice(beside)
             fields = [
                 f for f in dialog.findChildren(QWidget)
-                if isinstance(f, QLineEdit | QComboBox) and f.isVisible() and f.isEnabled()
+                if isinstance(f, QLineEdit | QComboBox | QAbstractButton)
+                and f.isVisible() and f.isEnabled()
+                and not any(word in getattr(f, "text", str)() for word in PRINTER)
             ]
-            if fields and self.chance.random() < 0.5:
+            if fields and self.chance.random() < 0.75:
                 self._answers.fiddle_with(self.chance.choice(fields))
             else:
                 dialog.close()

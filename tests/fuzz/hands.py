@@ -35,7 +35,7 @@ from app import settings, theme
 from app.document import Document
 from app.window import MainWindow
 from geometry.layout import Job
-from geometry.layout_file import job_to_text
+from geometry.layout_file import job_from_text, job_to_text
 from tests.fuzz.answers import Answers
 from tests.fuzz.hand_acts import Acts, breathe
 from tests.sample_cars import SAMPLES
@@ -162,6 +162,9 @@ class Hands:
         document = self.window.document
         self.watch.tell("undo all")
         document.cancel_preview()
+        # Whatever was done until here can be saved and opened again.
+        if job_from_text(job_to_text(document.job)) != document.job:
+            self.watch.fault("What stands is not what its file gives back.")
         while document.undo_text is not None:
             document.undo()
         breathe()

@@ -27,7 +27,7 @@ def folder(qapp, tmp_path: Path, monkeypatch: pytest.MonkeyPatch) -> Path:
 @pytest.mark.parametrize("seed", [1, 20])
 def test_random_hands_find_nothing_to_break(folder: Path, seed: int) -> None:
     hands = Hands(seed, folder)
-    hands.run(300)
+    hands.run(200)
     assert "\n\n".join(hands.watch.faults) == ""
     assert len(hands.watch.acts) > 50
 
