@@ -255,12 +255,18 @@ def test_missing_x11_libraries_are_named(monkeypatch):
     monkeypatch.setenv("DISPLAY", ":7")
     monkeypatch.delenv("WAYLAND_DISPLAY", raising=False)
     monkeypatch.delenv("QT_QPA_PLATFORM", raising=False)
-    monkeypatch.setattr(screen_check, "_loads", lambda library: "cursor" not in library)
+    monkeypatch.setattr(screen_check, "_loads", lambda library: "xcb-cursor" not in library)
     message = screen_check.why_no_window()
     assert message is not None
     assert message.endswith("sudo apt install libxcb-cursor0")
+    # A Wayland screen that works needs none of them.
     monkeypatch.setenv("WAYLAND_DISPLAY", "wayland-0")
+    monkeypatch.setattr(screen_check, "_wayland_answers", lambda: True)
     assert screen_check.why_no_window() is None
+    monkeypatch.delenv("DISPLAY")
+    monkeypatch.setattr(screen_check, "_loads", lambda library: "wayland-client" not in library)
+    message = screen_check.why_no_window()
+    assert message is not None and message.endswith("sudo apt install libwayland-client0")
 
 
 def test_without_a_screen_the_program_says_so(monkeypatch):
