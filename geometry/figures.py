@@ -14,16 +14,17 @@ import numpy as np
 
 from geometry import layout as names
 from geometry.corner import Corner, Poses, space
+from geometry.finding_checks.finding import SEVERITIES, Finding
 from geometry.findings import findings
 from geometry.front_view import FrontView, front_view, roll_center
 from geometry.layout import MM_PER_INCH, SIDE_POINTS, SIDES, Layout, Side, UnitName
 from geometry.linkage import Array, rigid_coefficients, rigid_place
-from geometry.solution import CornerState, solve
+from geometry.plan_findings import plan_findings
+from geometry.plan_view import plan_view
+from geometry.solution import SPAN, CornerState, Solution, solve
 from geometry.steering import inner_shifts
 
 PROGRAM = "bobline"
-DEFAULT_SPAN = 75.0
-"""Half the travel over which toe ranges are judged, mm."""
 
 _RANGE_STEPS = 601
 """Poses over the span for a toe range; a peak between two is missed by about 1e-6 deg."""
@@ -49,12 +50,12 @@ def figures(
 
     ``units`` is the unit of all lengths, those given and those given back (None: the
     layout's own). ``span`` is half the travel over which toe ranges and the best fit are
-    judged (None: DEFAULT_SPAN). Nothing raises for a complete layout: a pose that can't be
+    judged (None: SPAN). Nothing raises for a complete layout: a pose that can't be
     reached has ``assembles`` False and None for its figures.
     """
     unit = units or layout.units
     scale = MM_PER_INCH if unit == "in" else 1.0
-    half = DEFAULT_SPAN / scale if span is None else float(span)
+    half = SPAN / scale if span is None else float(span)
     with np.errstate(all="ignore"):
         solution = solve(layout, 0.0, 0.0, half * scale)
         return {
@@ -67,9 +68,15 @@ def figures(
             "tie_rod": [_tie_rod(solution.sides[side], half, scale) for side in SIDES],
             "findings": [
                 {"code": finding.code, "severity": finding.severity, "text": finding.text}
-                for finding in findings(solution)
+                for finding in _findings(solution)
             ],
         }
+
+
+def _findings(solution: Solution) -> list[Finding]:
+    """What the front view and the view from above find, worst first, as the window lists it."""
+    found = [*findings(solution), *plan_findings(plan_view(solution), solution.span)]
+    return sorted(found, key=lambda finding: SEVERITIES.index(finding.severity))
 
 
 def _number(value: float, scale: float = 1.0) -> float | None:

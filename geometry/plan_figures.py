@@ -56,7 +56,7 @@ def plan_figures(
     plan = plan_of(layout)
     if stopped():
         return None
-    found = tuple(plan_findings(plan))
+    found = tuple(plan_findings(plan, span))
     if not full or stopped():
         return None if stopped() else PlanFigures(layout, span, plan, found, None, {}, None, {})
     with np.errstate(all="ignore"):

@@ -9,20 +9,25 @@ import numpy as np
 from geometry import layout as names
 from geometry.finding_checks.finding import SEVERITIES, Cure, Finding, Move
 from geometry.finding_checks.wording import Wording
-from geometry.layout import SIDES, RelayRod
+from geometry.layout import SIDES, LayoutError, RelayRod
 from geometry.plan_view import PlanView
+from geometry.plan_words import effect_words
+from geometry.solution import SPAN, solve
 from geometry.steering import RACK_TRAVEL, steering_faults
-from geometry.steering_arm import arm_shape, string_check
+from geometry.steering_arm import arm_on_string, arm_shape
 from geometry.tolerances import PRACTICE, tolerance_source
 
 TOE_OUT_DIFFERENCE = float(np.radians(1.5))
 """How far toe-out on turns may differ between a left and a right turn, rad."""
 
 
-def plan_findings(plan: PlanView) -> list[Finding]:
-    """Every finding on a car's steering in plan, worst first; empty for a sound one."""
+def plan_findings(plan: PlanView, span: float = SPAN) -> list[Finding]:
+    """Every finding on a car's steering in plan, worst first; empty for a sound one.
+
+    ``span`` mm is half the travel over which a cure's effect on bump steer is told.
+    """
     with np.errstate(all="ignore"):
-        found = [*_stuck(plan), *_dead_center(plan), *_reverse(plan), *_uneven(plan)]
+        found = [*_stuck(plan), *_dead_center(plan), *_reverse(plan, span), *_uneven(plan)]
     return sorted(found, key=lambda finding: SEVERITIES.index(finding.severity))
 
 
@@ -71,7 +76,7 @@ def _dead_center(plan: PlanView) -> Iterator[Finding]:
         )
 
 
-def _reverse(plan: PlanView) -> Iterator[Finding]:
+def _reverse(plan: PlanView, span: float) -> Iterator[Finding]:
     """An outer wheel that turns more than the inner one."""
     if not plan.is_reverse:
         return
@@ -90,7 +95,7 @@ def _reverse(plan: PlanView) -> Iterator[Finding]:
         _lean_detail(plan),
         figure=min(figure for figure in figures if figure is not None) / 100.0,
         tolerance=0.0,
-        cure=_to_string(plan),
+        cure=_to_string(plan, span),
         points=(names.TIE_OUTER,),
     )
 
@@ -110,23 +115,20 @@ def _lean_detail(plan: PlanView) -> str:
     )
 
 
-def _to_string(plan: PlanView) -> Cure | None:
-    """The outer ends moved on to their strings, by a part made so."""
-    words = Wording(plan.layout.units)
-    moves, said = [], []
-    for side in SIDES[:1] if plan.layout.linked else SIDES:
-        check = string_check(plan.layout, side)
-        if check is None:
-            return None
-        moves.append(Move(names.TIE_OUTER, side, d_over=-check.off))
-        way = "inboard" if check.off > 0.0 else "outboard"
-        which = "the outer tie-rod end" if plan.layout.linked else f"the {side} outer end"
-        said.append(f"{which} {words.tape(check.off)} {way}")
-    text = (
-        f"For the string check set {' and '.join(said)}, with a knuckle or steering arm made"
-        " so; don't heat or bend one."
+def _to_string(plan: PlanView, span: float) -> Cure | None:
+    """The outer ends moved on to their strings by a part made so, and what that does to
+    Ackermann and to bump steer."""
+    try:
+        move = arm_on_string(solve(plan.layout, span=span), plan)
+    except LayoutError:
+        return None
+    sides = SIDES[:1] if plan.layout.linked else SIDES
+    moves = tuple(Move(names.TIE_OUTER, side, d_over=move.move[side]) for side in sides)
+    return Cure(
+        f"For the string check: {effect_words(move)} It takes a knuckle or steering arm made so;"
+        " don't heat or bend one.",
+        moves,
     )
-    return Cure(text, tuple(moves))
 
 
 def _uneven(plan: PlanView) -> Iterator[Finding]:

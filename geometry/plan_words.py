@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from geometry.finding_checks.wording import Wording
-from geometry.layout import SideName, UnitName
+from geometry.layout import SIDES, SideName, UnitName
 from geometry.lengths import format_length
 from geometry.steering_arm import ArmMove, ArmShape, StringCheck
 
@@ -102,6 +102,30 @@ def move_words(move: ArmMove, side: SideName, radius: float, unit: UnitName) -> 
             way = "raised" if rise > 0.0 else "lowered"
             said += f", or {followed} with the inner pivot {way} {words.tape(rise)}"
     return f"{said}."
+
+
+def effect_words(move: ArmMove) -> str:
+    """The same for the whole car: both sides in one while they are linked."""
+    layout = move.layout
+    said = []
+    for side in SIDES[:1] if layout.linked else SIDES:
+        words = move_words(move, side, layout.side(side).tire.radius, layout.units)
+        said.append(words if layout.linked else f"{side}: {words}")
+    return " ".join(said)
+
+
+def heading_words(now: float | None, ahead: float | None, at_20: float | None) -> str:
+    """Percent Ackermann as the card's heading: what doesn't exist is left out."""
+    said = [
+        f"{percent_text(percent)} {where}"
+        for percent, where in (
+            (now, "here"),
+            (ahead, "near straight ahead"),
+            (at_20, "with the inner wheel at 20°"),
+        )
+        if percent is not None
+    ]
+    return f"Ackermann: {', '.join(said) or 'not known'}"
 
 
 def _percent_change(move: ArmMove) -> str:

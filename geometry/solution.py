@@ -32,6 +32,8 @@ if TYPE_CHECKING:
     from geometry.roll import RolledPose
 
 SWEEP_STEPS = 81
+SPAN = 75.0
+"""Half the travel over which toe ranges and best fits are judged if nothing else is said, mm."""
 PIVOT_KINDS = ("as is", "string rule", "curvature center", "best fit")
 
 
@@ -186,7 +188,7 @@ def solve(
     layout: Layout,
     travel: float | dict[SideName, float] = 0.0,
     rack: float = 0.0,
-    span: float = 75.0,
+    span: float = SPAN,
 ) -> Solution:
     """Solve a car with the wheels at ``travel`` (both, or each) and the rack at ``rack``, mm.
 

@@ -21,7 +21,6 @@ from app.panels.flow import flow_of
 from app.plan_watch import PlanWatch
 from geometry import plan_words
 from geometry.layout import RELAY_POINTS, SIDES, TIE_INNER, TIE_OUTER, Layout, LayoutError
-from geometry.plan_figures import PlanFigures
 from geometry.steered_now import steered_now
 from geometry.steering_arm import ArmMove, string_check, swapped_knuckles
 from geometry.steering_rows import Row, degrees, lock_rows, now_rows
@@ -200,12 +199,13 @@ class SteeringPanel(Card):
         if self._document.layout.wheelbase is None:
             _say(self.percent, NO_WHEELBASE)
             return
-        parts = [f"now {plan_words.percent_text(now)}"]
-        if figures is not None:
-            ahead = figures.plan.straight_ahead_percent
-            parts += [f"near straight ahead {plan_words.percent_text(ahead)}",
-                      f"inner at 20° {plan_words.percent_text(figures.percent_at_20)}"]
-        _say(self.percent, f"Ackermann: {', '.join(parts)}")
+        if figures is None:
+            # What takes longer stands there in a moment; "not known" would be untrue till then.
+            here = "" if now is None else f": {plan_words.percent_text(now)} here"
+            _say(self.percent, f"Ackermann{here}")
+            return
+        ahead, at_20 = figures.plan.straight_ahead_percent, figures.percent_at_20
+        _say(self.percent, plan_words.heading_words(now, ahead, at_20))
 
     def _show_string(self, layout: Layout) -> None:
         unit = layout.units
@@ -231,19 +231,11 @@ class SteeringPanel(Card):
         effect, converse = "", ""
         if figures is not None:
             if isinstance(figures.on_string, ArmMove):
-                effect = f"To the string: {self._move_words(figures, figures.on_string)}"
+                effect = f"To the string: {plan_words.effect_words(figures.on_string)}"
             converse = plan_words.best_fit_words(dict(figures.by_inner))
         _say(self.effect, effect)
         _say(self.converse, converse)
         self.refresh()
-
-    def _move_words(self, figures: PlanFigures, move: ArmMove) -> str:
-        layout = figures.layout
-        said = []
-        for side in SIDES[:1] if layout.linked else SIDES:
-            words = plan_words.move_words(move, side, layout.side(side).tire.radius, layout.units)
-            said.append(words if layout.linked else f"{side}: {words}")
-        return " ".join(said)
 
     def _enable(self) -> None:
         figures, document = self._watch.current, self._document

@@ -286,9 +286,9 @@ def test_the_cards_figures_are_the_geometrys(make_window, qtbot, car):
         words = "left" if now.turned[side] > 0 else "right"
         assert panel.now.text_of("turned", right) == f"{degrees(abs(now.turned[side]))} {words}"
         assert panel.now.text_of("scrub now", right) == degrees(now.scrub[side])
-    assert f"now {round(now.percent)} %" in panel.percent.text()
+    assert f"{round(now.percent)} % here" in panel.percent.text()
     plan = plan_of(layout)
-    assert f"straight ahead {round(plan.straight_ahead_percent)} %" in panel.percent.text()
+    assert f"{round(plan.straight_ahead_percent)} % near straight ahead" in panel.percent.text()
     for turn, right in (("left", False), ("right", True)):
         percent, circle = plan.lock_percent[turn], plan.turning_circle[turn]
         assert panel.locks.text_of("percent", right) == f"{round(percent)} %"
@@ -362,7 +362,7 @@ def test_a_wanted_percentage_is_set_by_one_step(window, qtbot, answers):
     # Bump steer is told in the same breath.
     assert "becomes 75 %" in seen[0] and "toe range" in seen[0]
     figures_of(window, qtbot)
-    assert "inner at 20° 75 %" in window.steering_panel.percent.text()
+    assert "75 % with the inner wheel at 20°" in window.steering_panel.percent.text()
 
 
 def test_swapping_the_knuckles_is_one_step(window, qtbot):

@@ -11,6 +11,7 @@ import pytest
 
 from geometry import layout as names
 from geometry.figures import figures
+from geometry.finding_checks.finding import SEVERITIES
 from geometry.layout import Layout
 from tests.sample_cars import CARS, CUT, DEGENERATE, PARALLEL_EQUAL, ROADSTER, UNEQUAL_SIDES
 
@@ -335,6 +336,15 @@ def test_assumptions_and_findings_are_passed_on():
     assert got["findings"] == [
         {"code": f.code, "severity": f.severity, "text": f.text} for f in want
     ]
+
+
+def test_findings_from_above_stand_among_the_others_worst_first():
+    from geometry.steering_arm import swapped_knuckles
+
+    got = figures(swapped_knuckles(ROADSTER))["findings"]
+    assert "reverse-ackermann" in [row["code"] for row in got]
+    order = [SEVERITIES.index(row["severity"]) for row in got]
+    assert order == sorted(order)
 
 
 def test_lowered_on_springs_is_the_same_linkage_two_and_a_half_inches_up_its_travel():

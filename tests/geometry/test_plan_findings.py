@@ -2,8 +2,10 @@
 
 from dataclasses import replace
 
+import numpy as np
 import pytest
 
+from geometry.finding_checks.wording import Wording
 from geometry.layout import (
     LOWER_BALL,
     LOWER_INNER,
@@ -20,6 +22,7 @@ from geometry.layout import (
 )
 from geometry.plan_findings import plan_findings
 from geometry.plan_view import plan_of
+from geometry.solution import solve
 from geometry.steering_arm import swapped_knuckles
 
 ARMS = Side(
@@ -57,7 +60,17 @@ def test_knuckles_on_the_wrong_side_are_found_and_the_cure_cures(units: str) -> 
     assert "ahead of the axle must lean outboard" in finding.detail
     assert finding.cure is not None
     assert "outboard" in finding.cure.text and "don't heat or bend" in finding.cure.text
-    assert codes(finding.cure.applied(swapped)) == []
+    cured = finding.cure.applied(swapped)
+    assert codes(cured) == []
+    # What it does to Ackermann and to bump steer is told in the same breath.
+    words, text = Wording(swapped.units), finding.cure.text
+    before, after = (
+        words.fine(2.0 * 310.0 * float(np.ptp(solve(car).left.sweep.toe)))
+        for car in (swapped, cured)
+    )
+    assert f"toe range {before} becomes {after}" in text
+    percent = plan_of(cured).percent_at(float(np.radians(20.0)))
+    assert percent is not None and f"becomes {round(percent)} %" in text
 
 
 def test_arms_behind_the_axle_that_lean_outboard_are_found() -> None:
