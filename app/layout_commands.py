@@ -35,6 +35,7 @@ class LayoutCommands(QObject):
         ):
             self._add(menu, name, words, act, keys)
         menu.addSeparator()
+        self._add(menu, "turn", "I&n a turn…", self.turn, "Ctrl+Shift+B")
         self.motion = BumpMotion(self.document)
         play = self._add(menu, "play", "&Over a bump", None, "Ctrl+B")
         play.setCheckable(True)
@@ -58,6 +59,14 @@ class LayoutCommands(QObject):
         from app.panels.rack_zone import RackZoneDialog
 
         dialog = RackZoneDialog(self.document, self.window)
+        dialog.setAttribute(Qt.WidgetAttribute.WA_DeleteOnClose)
+        dialog.show()
+
+    def turn(self) -> None:
+        """The car leaned in a turn, as found and as planned, beside the floor."""
+        from app.panels.turn_dialog import TurnDialog
+
+        dialog = TurnDialog(self.document, self.window)
         dialog.setAttribute(Qt.WidgetAttribute.WA_DeleteOnClose)
         dialog.show()
 
