@@ -35,7 +35,7 @@ class LayoutCommands(QObject):
         ):
             self._add(menu, name, words, act, keys)
         menu.addSeparator()
-        self._add(menu, "turn", "I&n a turn…", self.turn, "Ctrl+Shift+B")
+        self._add(menu, "turn", "In a t&urn…", self.turn, "Ctrl+Shift+B")
         self.motion = BumpMotion(self.document)
         play = self._add(menu, "play", "&Over a bump", None, "Ctrl+B")
         play.setCheckable(True)
