@@ -29,6 +29,8 @@ class LayoutCommands(QObject):
             ("wheel", "&Tire and wheel…", self.wheel, ""),
             ("loads", "&Weights and springs…", self.loads, ""),
             ("no-go", "&No-go shapes…", self.no_go, ""),
+            ("draw no-go", "Dr&aw a no-go shape", self.draw_no_go, "Ctrl+E"),
+            ("draw box", "Draw a no-go bo&x", self.draw_box, "Ctrl+Shift+E"),
             ("zone", "&Rack zone…", self.zone, "Ctrl+R"),
             ("targets", "Tar&gets and pivot zone…", self.targets, "Ctrl+T"),
             ("fixes", "F&ix list…", self.fixes, "Ctrl+F"),
@@ -109,3 +111,17 @@ class LayoutCommands(QObject):
         from app.panels.no_go_dialog import NoGoDialog
 
         self._run(NoGoDialog(self.document, self.window))
+
+    def type_no_go(self, index: int) -> None:
+        """The same with the shape at a place in Layout.no_go shown."""
+        from app.panels.no_go_dialog import NoGoDialog
+
+        self._run(NoGoDialog(self.document, self.window, index))
+
+    def draw_no_go(self) -> None:
+        """Draw an outline on the floor in sight, corner by corner."""
+        self.window.floor.shapes.start_drawing()
+
+    def draw_box(self) -> None:
+        """Draw an upright box on the floor in sight from corner to corner."""
+        self.window.floor.shapes.start_drawing(boxed=True)

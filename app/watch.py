@@ -15,13 +15,12 @@ from app.document import Document
 from geometry.clearance_findings import clearance_findings
 from geometry.finding_checks.finding import Finding
 from geometry.layout import Layout
-from geometry.steering import rack_limits
+from geometry.steering import least_lock
 
 
 def room_findings(layout: Layout, span: float) -> list[Finding]:
     """Room, joint and spring findings over the travel and the steering's whole lock."""
-    limits = rack_limits(layout)
-    return clearance_findings(layout, span, min(limits.lock_left, -limits.lock_right))
+    return clearance_findings(layout, span, least_lock(layout))
 
 
 class RoomWatch(QObject):

@@ -88,6 +88,7 @@ class MainWindow(QMainWindow):
         self.findings_panel.shown.connect(self._point_out)
         self.steering_panel.refused.connect(self.show_refusal)
         self.front.place_asked.connect(self._type_place)
+        self.front.shape_asked.connect(self.commands.layout_commands.type_no_go)
         self.stance_bar.refused.connect(self.show_refusal)
         document.edited.connect(self._show_name)
         document.opened.connect(self._opened)
@@ -166,6 +167,7 @@ class MainWindow(QMainWindow):
         wanted: FloorView = self.above if above and self.above is not None else self.front
         wanted.snapping, wanted.tape_mode = self.floor.snapping, False
         self.floor.tape_mode = False
+        self.floor.shapes.stop_drawing()
         self.floor.wake(False)
         self.floor = wanted
         wanted.wake(True)
@@ -188,6 +190,7 @@ class MainWindow(QMainWindow):
         view.set_dark(self.commands.actions["dark"].isChecked())
         view.pointer_moved.connect(self._show_place)
         view.place_asked.connect(self._type_place)
+        view.shape_asked.connect(self.commands.layout_commands.type_no_go)
         self.commands.attach(view)
         self.floors.addWidget(view)
         return view
@@ -471,6 +474,9 @@ class MainWindow(QMainWindow):
         self.commands.layout_commands.motion.stop()
         self.room_watch.background.finish()
         self.plan_watch.background.finish()
+        for floor in (self.front, self.above):
+            if floor is not None:
+                floor.shapes.background.finish()
         self.recovery.end()
         self.document.file.leave()
         settings.put("window geometry", self.saveGeometry())

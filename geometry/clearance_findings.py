@@ -43,7 +43,7 @@ def _once_while_linked(found: list[Finding], layout: Layout) -> list[Finding]:
     return out
 
 
-def _pose_words(one: Clearance, words: Wording) -> str:
+def pose_words(one: Clearance, words: Wording) -> str:
     travel = "ride height"
     if abs(one.travel) > 0.5:
         travel = f"{words.tape(one.travel)} of {'bump' if one.travel > 0 else 'droop'}"
@@ -51,6 +51,16 @@ def _pose_words(one: Clearance, words: Wording) -> str:
         return f"at {travel}, steering straight"
     way = "left" if one.rack > 0 else "right"
     return f"at {travel}, steering {words.tape(one.rack)} to the {way}"
+
+
+def room_words(one: Clearance, words: Wording) -> str:
+    """The tightest place of a shape in one line: how much room, to what, in which pose."""
+    part = one.part if one.side is None else f"{one.side} {one.part}"
+    if one.room <= 0.0:
+        deep = f" by {words.tape(one.room)}" if one.room < -0.05 else ""
+        return f"{part} enters it{deep} {pose_words(one, words)}"
+    short = "" if one.is_met else f", wanted {words.tape(one.wanted)}"
+    return f"{words.tape(one.room)} of room to the {part}{short}, {pose_words(one, words)}"
 
 
 def _room(one: Clearance, words: Wording) -> Finding:
@@ -67,7 +77,7 @@ def _room(one: Clearance, words: Wording) -> Finding:
         severity=severity,
         side=None,
         headline=headline,
-        detail=f"Tightest {_pose_words(one, words)}, {view}. Wanted: {words.tape(one.wanted)} "
+        detail=f"Tightest {pose_words(one, words)}, {view}. Wanted: {words.tape(one.wanted)} "
         "(set with the shape, or 1 in for tires).",
         figure=one.room,
         tolerance=one.wanted,

@@ -252,6 +252,12 @@ def rack_limits(layout: Layout, travel: float | dict[SideName, float] = 0.0) -> 
     return RackLimits(0.0 - float(ends[0]), float(ends[1]), setting, reasons[0], reasons[1])
 
 
+def least_lock(layout: Layout) -> float:
+    """The rack travel, mm, that the steering reaches both ways at ride height."""
+    limits = rack_limits(layout)
+    return min(limits.lock_left, -limits.lock_right)
+
+
 def _why(
     layout: Layout,
     corners: dict[SideName, Corner],

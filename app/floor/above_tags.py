@@ -5,6 +5,7 @@ from __future__ import annotations
 from typing import TYPE_CHECKING
 
 from app.floor.above_scene import AboveScene
+from app.floor.shape_marks import shape_tags
 from app.floor.tag_parts import inside, measured, mirrored, nails, no_go, notices, point, reach
 from app.floor.tags import TagSpec
 from geometry import plan_words
@@ -20,7 +21,8 @@ def above_tags(view: AboveView, area: Box) -> tuple[list[TagSpec], list[Box]]:
     """The tags, and boxes (pixels) that they should rather not cover."""
     scene = view.scene
     assert isinstance(scene, AboveScene)
-    specs = notices(view, area) + reach(view) + measured(view) + nails(view, area)
+    specs = notices(view, area) + shape_tags(view, area) + reach(view) + measured(view)
+    specs += nails(view, area)
     specs += _turn(view, scene, area)
     specs += _checks(view, scene)
     specs += _front(area)

@@ -71,6 +71,9 @@ class Hand:
             return
         if not left:
             return
+        if view.shapes.drawing is not None:
+            view.shapes.click(px, event.modifiers())
+            return
         if view.tape_mode:
             place = self.tape_place(px, event.modifiers())
             view.stretch_tape(place, place)
@@ -80,6 +83,7 @@ class Hand:
         if key is None:
             view.document.select(None)
             view.notice(None)
+            view.shapes.press(px)
             return
         view.document.select(*key)
         if not view.may_move(key):
@@ -97,6 +101,8 @@ class Hand:
             self._drag_to(px, event.modifiers())
         elif self.measuring:
             view.stretch_tape(view.tape_ends[0], self.tape_place(px, event.modifiers()))
+        elif view.shapes.busy:
+            view.shapes.move(px, event.modifiers())
         else:
             view.hover(view.nail_at(px))
 
@@ -115,6 +121,9 @@ class Hand:
             view.stretch_tape(
                 view.tape_ends[0], self.tape_place(event.position(), event.modifiers())
             )
+        if view.shapes.dragging:
+            view.shapes.release(event.position(), event.modifiers())
+            return
         drag, self.drag = self.drag, None
         if drag is None:
             return
@@ -173,6 +182,8 @@ class Hand:
 
     def cancel(self) -> bool:
         """Put back what is being dragged; False if nothing was."""
+        if self._view.shapes.cancel():
+            return True
         if self.drag is not None:
             self.drag = None
             self._view.document.cancel_preview()
@@ -187,12 +198,15 @@ class Hand:
         """The document changed under the hand: let go without an act."""
         if not self.doing:
             self.drag = None
+            self._view.shapes.forget()
 
     # --- keys -----------------------------------------------------------------------
 
     def key(self, event: QKeyEvent) -> bool:
         """Act on a key; False leaves it to others."""
         view, key = self._view, Qt.Key(event.key())
+        if view.shapes.key(event):
+            return True
         if key == Qt.Key.Key_Space and not event.isAutoRepeat():
             self.space = True
             view.show_cursor()

@@ -9,6 +9,7 @@ from PySide6.QtWidgets import QMenu
 
 from app.floor.nails import Key
 from app.floor.wording import nail_name
+from geometry.floor_words import capital
 from geometry.layout import TIE_INNER, Point
 
 if TYPE_CHECKING:
@@ -24,6 +25,7 @@ def nail_menu(view: FloorView, key: Key | None) -> QMenu:
         tape.setCheckable(True)
         tape.setChecked(view.tape_mode)
         tape.toggled.connect(partial(setattr, view, "tape_mode"))
+        shape_entries(view, menu)
         return menu
     layout = view.document.layout
     free = not view.document.showing_found
@@ -49,3 +51,17 @@ def send_to_pivot(view: FloorView, key: Key, kind: str) -> None:
         fore = view.document.settled_layout().point(*key).fore
         view.document.move_point(*key, Point(*place, fore))
         view.announce_nail(key)
+
+
+def shape_entries(view: FloorView, menu: QMenu) -> None:
+    """What can be done about no-go shapes on the bare floor, or with the one that is held."""
+    menu.addSeparator()
+    menu.addAction("&Draw a no-go shape", view.shapes.start_drawing)
+    menu.addAction("Draw a no-go &box", partial(view.shapes.start_drawing, boxed=True))
+    held, shape = view.shapes.held, view.shapes.held_shape()
+    if held is None or shape is None:
+        return
+    menu.addSection(capital(shape.name))
+    menu.addAction("&Name, room and corners…", partial(view.shape_asked.emit, held.index))
+    what = "shape" if held.corner is None else "corner"
+    menu.addAction(f"Take {what} &away", view.shapes.delete)

@@ -6,6 +6,7 @@ import math
 from typing import TYPE_CHECKING
 
 from app.floor.scene import FloorScene
+from app.floor.shape_marks import shape_tags
 from app.floor.tag_parts import inside, measured, mirrored, nails, no_go, notices, point, reach
 from app.floor.tags import TagSpec
 from geometry import floor_words
@@ -27,6 +28,7 @@ def tag_list(view: FloorView, area: Box) -> tuple[list[TagSpec], list[Box]]:
     """The tags, and boxes (pixels) that they should rather not cover."""
     specs: list[TagSpec] = []
     specs += notices(view, area)
+    specs += shape_tags(view, area)
     specs += reach(view)
     specs += measured(view)
     specs += nails(view, area)

@@ -129,7 +129,8 @@ def mirrored(view: FloorView) -> bool:
 
 def no_go(view: FloorView, area: Box) -> list[TagSpec]:
     out = []
-    named: set[str] = set()
+    shape = view.shapes.held_shape()
+    named: set[str] = set() if shape is None else {shape.name}
     for index, (name, x, y) in enumerate(view.scene.no_go.places):
         if name in named:
             continue

@@ -23,6 +23,7 @@ from app.floor.measuring import MeasuringTape
 from app.floor.menu import nail_menu
 from app.floor.nails import REACH, Key, nearest
 from app.floor.scene import CarScene, FloorScene, zone_outlines
+from app.floor.shape_hand import ShapeHand
 from app.floor.tag_list import tag_list
 from app.floor.tags import TagSpec
 from app.floor.tapes import Tape
@@ -48,6 +49,8 @@ class FloorView(QWidget):
     """The pointer's place: over (left of the car positive) and the second measure, mm."""
     place_asked = Signal(str, str)
     """A person wants to type a place for a nail (side, point name)."""
+    shape_asked = Signal(int)
+    """A person wants to type a no-go shape; its place in Layout.no_go."""
     tape_mode_changed = Signal(bool)
     announced = Signal(str)
     """What a screen reader was told."""
@@ -57,6 +60,7 @@ class FloorView(QWidget):
         self.document = document
         self.scene: CarScene = self._new_scene()
         self.hand = Hand(self)
+        self.shapes = ShapeHand(self)
         self.canvas = HandledCanvas(self.scene, self)
         self.measuring = MeasuringTape(self.scene)
         self.across = Tape(Qt.Orientation.Horizontal, self)
@@ -111,6 +115,7 @@ class FloorView(QWidget):
     def _dress(self) -> None:
         palette = self._palette
         self.scene.dress(palette, self.font(), self.devicePixelRatioF())
+        self.shapes.marks.dress(palette, self.devicePixelRatioF())
         self.measuring.dress(palette, self.font(), self.devicePixelRatioF())
         self.canvas.dress(palette, self.document.units)
         self.across.dress(palette)
@@ -156,6 +161,7 @@ class FloorView(QWidget):
         self.scene.stretch(canvas.in_view(30.0))
         self.scene.nails.choose(self.chosen)
         self.scene.nails.hover(self.hovered if self.hand.drag is None else self.hand.drag.key)
+        self.shapes.lay_out()
         port = canvas.viewport().rect()
         area = Box(4.0, 4.0, port.width() - 8.0, port.height() - 8.0)
         specs, soft = self._tags(area)
@@ -177,6 +183,8 @@ class FloorView(QWidget):
             self.lay_out()
 
     def _selected(self) -> None:
+        if self.document.selection is not None:
+            self.shapes.let_go()
         if self._awake:
             self.lay_out()
 
@@ -341,6 +349,8 @@ class FloorView(QWidget):
     def double_click(self, px: QPointF) -> None:
         """On a nail: type its place. Elsewhere: the whole car."""
         key = self.nail_at(px)
+        if self.shapes.double_click(px, on_nail=key is not None):
+            return
         if key is None:
             self.fit()
         else:
@@ -357,6 +367,8 @@ class FloorView(QWidget):
         self.hand.cancel()
         if key is not None:
             self.document.select(*key)
+        elif by_mouse:
+            self.shapes.take_up(QPointF(event.pos()))
         menu = nail_menu(self, key)
         menu.exec(at)
         menu.deleteLater()
@@ -398,6 +410,7 @@ class FloorView(QWidget):
         if on == self._tape_mode:
             return
         self.hand.cancel()
+        self.shapes.stop_drawing()
         self._tape_mode = on
         if not on:
             self.roll_up_tape()
@@ -431,7 +444,7 @@ class FloorView(QWidget):
             shape = Qt.CursorShape.ClosedHandCursor
         elif self.hand.space:
             shape = Qt.CursorShape.OpenHandCursor
-        elif self._tape_mode:
+        elif self._tape_mode or self.shapes.drawing is not None:
             shape = Qt.CursorShape.CrossCursor
         elif self.hovered is not None:
             shape = Qt.CursorShape.PointingHandCursor

@@ -24,8 +24,13 @@ def nail_name(layout: Layout, key: Key) -> str:
 def nail_words(layout: Layout, key: Key, face: Face = FRONT) -> str:
     """Where a nail is measured, at ride height, by the two measures of a floor."""
     point, unit = layout.point(*key), layout.units
-    second = tape_text(face.measure(point), unit)
-    return f"{tape_text(point.over, unit)} over · {second} {face.second}"
+    return place_words((point.over, face.measure(point)), unit, face)
+
+
+def place_words(measures: XY, unit: UnitName, face: Face = FRONT) -> str:
+    """A place by the two measures of a floor, mm."""
+    over, second = measures
+    return f"{tape_text(over, unit)} over · {tape_text(second, unit)} {face.second}"
 
 
 def spoken(layout: Layout, key: Key, face: Face = FRONT) -> str:

@@ -41,7 +41,9 @@ _VIEWS = (("front", "from the front (over, up)"), ("above", "from above (over, f
 class NoGoDialog(QDialog):
     """Edits Layout.no_go; all changes are one undo step."""
 
-    def __init__(self, document: Document, parent: QWidget | None = None) -> None:
+    def __init__(
+        self, document: Document, parent: QWidget | None = None, start: int = 0
+    ) -> None:
         super().__init__(parent)
         self.setWindowTitle("No-go shapes")
         self._document = document
@@ -67,7 +69,7 @@ class NoGoDialog(QDialog):
         buttons.rejected.connect(self.reject)
         column.addWidget(buttons)
         self.resize(720, 440)
-        self._fill_list(0)
+        self._fill_list(start)
 
     def _list_column(self) -> QVBoxLayout:
         column = QVBoxLayout()
