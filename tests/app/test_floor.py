@@ -565,7 +565,7 @@ def test_tires_and_floor_have_their_colors(floor):
         for x in (735.0, -735.0):
             assert close(color_at(view, (x, 550.0)), tire)
         assert close(color_at(view, (150.0, 620.0)), QColor(palette.floor), 25)
-        assert not close(color_at(view, (150.0, 620.0)), tire)
+        assert not close(color_at(view, (150.0, 620.0)), tire, 25)
 
 
 def test_higher_places_are_painted_higher(floor):
