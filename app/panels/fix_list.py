@@ -97,6 +97,7 @@ class FixListDialog(QDialog):
         self.allowed.changed.connect(self._allowed_changed)
         # With large letters on a small screen the rows are wider than there is room.
         area = QScrollArea()
+        area.setAccessibleName("What may be moved")
         area.setWidgetResizable(True)
         area.setWidget(self.allowed)
         bar = area.horizontalScrollBar().sizeHint().height()
@@ -144,6 +145,7 @@ class FixListDialog(QDialog):
         self.words.setTextInteractionFlags(Qt.TextInteractionFlag.TextSelectableByMouse)
         self.words.setAccessibleName("The chosen move")
         area = QScrollArea()
+        area.setAccessibleName("Words on the chosen move")
         area.setWidgetResizable(True)
         area.setWidget(self.words)
         row.addWidget(area, 1)

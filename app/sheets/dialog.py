@@ -120,6 +120,7 @@ class SheetsDialog(QDialog):
         self._paperwork()
         column.addStretch(1)
         scroll = QScrollArea()
+        scroll.setAccessibleName("What goes on the sheet")
         scroll.setWidgetResizable(True)
         scroll.setWidget(inside)
         left = QWidget()
