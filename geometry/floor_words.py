@@ -71,6 +71,13 @@ def pose_words(solution: Solution) -> str:
 
     words = travel(left) if left == right else f"left {travel(left)}, right {travel(right)}"
     if abs(solution.rack) > 1e-9:
-        side = "left" if solution.rack > 0.0 else "right"
-        words += f", steering {format_length(abs(solution.rack), unit, mark=True)} to the {side}"
+        words += f", {steering_words(solution.rack, unit)}"
     return capital(words)
+
+
+def steering_words(rack: float, unit: UnitName) -> str:
+    """How the steering stands, ``rack`` mm to the left: "steering 1 in to the left"."""
+    if abs(rack) <= 1e-9:
+        return "steering straight"
+    side = "left" if rack > 0.0 else "right"
+    return f"steering {format_length(abs(rack), unit, mark=True)} to the {side}"

@@ -8,6 +8,7 @@ leaves it or fills too little of it.
 from __future__ import annotations
 
 import math
+from typing import TYPE_CHECKING
 
 import numpy as np
 import pyqtgraph as pg
@@ -23,11 +24,9 @@ from PySide6.QtGui import (
     QShowEvent,
 )
 from PySide6.QtWidgets import (
-    QDialog,
     QGraphicsItem,
     QGraphicsPathItem,
     QGraphicsRectItem,
-    QGridLayout,
     QHBoxLayout,
     QLabel,
     QSizePolicy,
@@ -37,15 +36,25 @@ from PySide6.QtWidgets import (
 
 from app import theme
 from app.document import Document
-from geometry.curves import BY_KEY, Curve, axis_label, in_units
+from geometry.curves import BY_KEY, Curve, axis_label, in_units, sweep_words
 from geometry.layout import MM_PER_INCH, SideName
 from geometry.solution import Solution
 
-SHOWN = ("toe", "camber", "roll center", "track")
-COLORS = {"toe": "#D55E00", "camber": "#0072B2", "roll center": "#009E73", "track": "#8B3A6F"}
+if TYPE_CHECKING:
+    from app.panels.large_curves import LargeCurves
+
+TOE, STEERED_TOE = "toe", "toe change"
+"""The first curve, straight ahead and with the steering off center: a steered wheel's toe is
+the steering itself, in which bump steer would not be seen."""
+SHOWN = (TOE, "camber", "roll center", "track")
+COLORS = {TOE: "#D55E00", STEERED_TOE: "#D55E00", "camber": "#0072B2",
+          "roll center": "#009E73", "track": "#8B3A6F"}
+LEAST_PLOT = 110
+"""Pixels in which a plot can still be read."""
 FOUND_COLOR = "#8C8A84"
 BAND_COLOR = "#E4EFE4"
 
+_CUT = Qt.TextElideMode.ElideRight
 _KEPT = QGraphicsItem.CacheMode.DeviceCoordinateCache
 """For what only changes with the range: a picture of it is kept and not painted anew."""
 
@@ -86,7 +95,7 @@ class _Plot(pg.PlotWidget):
         # The card's color covers it all, so that nothing needs to be painted beneath.
         self.viewport().setAttribute(Qt.WidgetAttribute.WA_OpaquePaintEvent)
         self.setSizePolicy(QSizePolicy.Policy.Expanding, QSizePolicy.Policy.Ignored)
-        self.setMinimumHeight(110)
+        self.setMinimumHeight(LEAST_PLOT)
 
     def _pick(self, event: QMouseEvent) -> None:
         scene = self.mapToScene(event.position().toPoint())
@@ -148,17 +157,29 @@ class CurvePlot(QWidget):
         self._right = self._path(color, 1.0, Qt.PenStyle.DotLine)
         self._planned = self._path(color, 2.0 if large else 1.5)
         self._cursor = self._path(theme.INK, 1.0)
+        self._right_cursor = self._path(theme.INK, 1.0, Qt.PenStyle.DotLine)
         self.plot.addItem(self._band)
-        for item in (self._grid, self._found, self._right, self._planned, self._cursor):
+        for item in (self._grid, self._found, self._right, self._planned, self._cursor,
+                     self._right_cursor):
             self.plot.addItem(item)
         self.plot.picked.connect(self._set_travel)
-        self.plot.setAccessibleName(f"{curve.label} through the travel")
+        self._name()
         self.plot.setToolTip(
             "Click or drag to move the wheels. Solid: as planned; dotted: right side where it "
             "differs; dashed gray: as found; tinted: within tolerance. Double-click: large."
         )
         self._size()
         self.refresh()
+
+    def _name(self) -> None:
+        self.plot.setAccessibleName(f"{self.curve.label} through the travel")
+
+    def show_curve(self, curve: Curve) -> None:
+        """Take another curve from the next drawing on."""
+        if curve is not self.curve:
+            self.curve = curve
+            self._range = self._frame = None
+            self._name()
 
     def _size(self) -> None:
         """Letters and axes as the text size asks; their places are kept fixed for speed."""
@@ -289,12 +310,43 @@ class CurvePlot(QWidget):
         self._grid.setPath(grid)
 
     def _place_cursor(self, units: str) -> None:
-        travel = self._document.travel["left"]
-        at = travel / MM_PER_INCH if units == "in" else travel
+        travel = self._document.travel
         assert self._range is not None
-        path = QPainterPath(QPointF(at, self._range[0]))
-        path.lineTo(at, self._range[1])
-        self._cursor.setPath(path)
+        for item, place in ((self._cursor, travel["left"]), (self._right_cursor, travel["right"])):
+            at = place / MM_PER_INCH if units == "in" else place
+            path = QPainterPath(QPointF(at, self._range[0]))
+            path.lineTo(at, self._range[1])
+            item.setPath(path)
+        self._right_cursor.setVisible(travel["left"] != travel["right"])
+
+
+class SweepCaption(QLabel):
+    """What the curves go through, and how their lines are told apart; cut short where narrow."""
+
+    def __init__(self) -> None:
+        super().__init__()
+        self.setObjectName("curve title")
+        self.setAlignment(Qt.AlignmentFlag.AlignCenter)
+        self.setSizePolicy(QSizePolicy.Policy.Ignored, QSizePolicy.Policy.Fixed)
+        self._words = ""
+
+    def refresh(self, document: Document) -> None:
+        words = sweep_words(document.solution, document.roll)
+        if document.found_solution is not None:
+            words += " · solid: as planned, dashed: as found"
+        if words != self._words:
+            self._words = words
+            self.setAccessibleName(words)
+            self.setToolTip(words)
+            self._fit()
+
+    def _fit(self) -> None:
+        room = max(self.width() - 4, 0)
+        self.setText(self.fontMetrics().elidedText(self._words, _CUT, room))
+
+    def resizeEvent(self, event: QResizeEvent) -> None:
+        super().resizeEvent(event)
+        self._fit()
 
 
 class CurvesPanel(QWidget):
@@ -303,31 +355,38 @@ class CurvesPanel(QWidget):
     def __init__(self, document: Document, parent: QWidget | None = None) -> None:
         super().__init__(parent)
         self._document = document
-        row = QHBoxLayout(self)
-        row.setContentsMargins(0, 0, 0, 0)
+        column = QVBoxLayout(self)
+        column.setContentsMargins(0, 0, 0, 0)
+        column.setSpacing(2)
+        self.caption = SweepCaption()
+        column.addWidget(self.caption)
+        row = QHBoxLayout()
         row.setSpacing(6)
+        column.addLayout(row, 1)
         self.plots: list[CurvePlot] = []
         for key in SHOWN:
             plot = CurvePlot(BY_KEY[key], document)
             plot.plot.enlarged.connect(self.enlarge)
             self.plots.append(plot)
             row.addWidget(plot)
-        self.setMinimumHeight(130)
+        self._least_height()
         self.setSizePolicy(QSizePolicy.Policy.Ignored, QSizePolicy.Policy.Preferred)
-        self._large: QDialog | None = None
-        self._large_plots: list[CurvePlot] = []
+        self._large: LargeCurves | None = None
         document.solved.connect(self.refresh)
         document.edited.connect(self.refresh)
         document.opened.connect(self.refresh)
 
     def refresh(self) -> None:
         """Draw what is in sight; what is hidden costs nothing."""
-        if self.isVisible():
-            for plot in self.plots:
-                plot.refresh()
-        if self._large is not None and self._large.isVisible():
-            for plot in self._large_plots:
-                plot.refresh()
+        if not self.isVisible():
+            return
+        had = self.plots[0].curve
+        self.plots[0].show_curve(BY_KEY[STEERED_TOE if self._document.rack else TOE])
+        if self.plots[0].curve is not had:
+            self._fit_number()
+        self.caption.refresh(self._document)
+        for plot in self.plots:
+            plot.refresh()
 
     def resizeEvent(self, event: QResizeEvent) -> None:
         super().resizeEvent(event)
@@ -336,7 +395,12 @@ class CurvesPanel(QWidget):
     def changeEvent(self, event: QEvent) -> None:
         super().changeEvent(event)
         if event.type() == QEvent.Type.FontChange and hasattr(self, "plots"):
+            self._least_height()
             self._fit_number()
+
+    def _least_height(self) -> None:
+        """Room for a plot below two lines of words, however large the letters are."""
+        self.setMinimumHeight(LEAST_PLOT + 2 * self.fontMetrics().height() + 6)
 
     def _fit_number(self) -> None:
         """As many curves as have room to be read; all of them are in the large window."""
@@ -355,14 +419,9 @@ class CurvesPanel(QWidget):
     def enlarge(self) -> None:
         """All curves in a window of their own, alive beside the floor."""
         if self._large is None:
-            self._large = QDialog(self.window())
-            self._large.setWindowTitle("Curves through the travel")
-            grid = QGridLayout(self._large)
-            for index, curve in enumerate(BY_KEY.values()):
-                plot = CurvePlot(curve, self._document, large=True)
-                self._large_plots.append(plot)
-                grid.addWidget(plot, index // 2, index % 2)
-            self._large.resize(1000, 820)
+            from app.panels.large_curves import LargeCurves
+
+            self._large = LargeCurves(self._document, self.window())
         self._large.show()
         self._large.raise_()
-        self.refresh()
+        self._large.refresh()

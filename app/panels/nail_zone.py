@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Callable
 
-from PySide6.QtCore import Qt
+from PySide6.QtCore import QSize, Qt
 from PySide6.QtWidgets import (
     QCheckBox,
     QComboBox,
@@ -83,6 +83,10 @@ class NailZoneDialog(QDialog):
         self.progress = QProgressBar()
         self.progress.setRange(0, 100)
         self.progress.setAccessibleName("How far the zone is worked out")
+        # Seen only while there is something to wait for, without moving what is below.
+        policy = self.progress.sizePolicy()
+        policy.setRetainSizeWhenHidden(True)
+        self.progress.setSizePolicy(policy)
         inner.addWidget(self.progress)
         column.addWidget(box)
         row = QHBoxLayout()
@@ -98,7 +102,8 @@ class NailZoneDialog(QDialog):
         row.addWidget(close)
         column.addLayout(row)
         letters = self.fontMetrics()
-        self.resize(110 * letters.averageCharWidth(), 32 * letters.height())
+        wanted = QSize(110 * letters.averageCharWidth(), 32 * letters.height())
+        self.resize(wanted.boundedTo(self.screen().availableSize() - QSize(40, 60)))
 
     # --- which nail ---------------------------------------------------------------------
 
@@ -159,6 +164,7 @@ class NailZoneDialog(QDialog):
         self.words.setText("Working it out …")
         self.put.setEnabled(False)
         self.progress.setValue(0)
+        self.progress.show()
 
         def question(
             stopped: Callable[[], bool], tell: Callable[[object], None]
@@ -182,7 +188,7 @@ class NailZoneDialog(QDialog):
 
     def _done(self, zone: PivotZone | None) -> None:
         if zone is not None:
-            self.progress.setValue(100)
+            self.progress.hide()
             self._show(zone)
 
     def _show(self, zone: PivotZone) -> None:

@@ -12,6 +12,7 @@ from PySide6.QtCore import QObject, Qt
 from PySide6.QtGui import QColor, QMouseEvent, QPainterPath
 from PySide6.QtWidgets import (
     QDialog,
+    QGraphicsItem,
     QGraphicsPathItem,
     QHBoxLayout,
     QLabel,
@@ -27,6 +28,7 @@ from app.document import Document
 from app.floor.view import FloorView
 from app.panels.stance_bar import LengthControl
 from geometry.finding_checks.wording import Wording
+from geometry.floor_words import steering_words
 from geometry.layout import MM_PER_INCH, SIDES, TIE_INNER, SideName
 from geometry.solution import Solution
 from geometry.tolerances import toe_length
@@ -65,8 +67,8 @@ class FloorZones(QObject):
 
     def refresh(self) -> None:
         solution = self._document.shown_solution
-        # Where the wheels and the rack stand now makes no difference to a zone.
-        made_of = solution.layout, solution.span, self.shown
+        # Where the wheels stand now makes no difference to a zone; the steering does.
+        made_of = solution.layout, solution.span, solution.rack, self.shown
         if made_of == self._made_of:
             return
         self._made_of = made_of
@@ -74,10 +76,11 @@ class FloorZones(QObject):
         for side in SIDES:
             if not self.shown:
                 areas[side] = None
-            elif side == "right" and solution.layout.linked:
+            elif side == "right" and solution.layout.linked and not solution.rack:
                 areas[side] = areas["left"]
             else:
-                areas[side] = buildable(rack_zone_of(solution, side), solution, side)
+                zone = rack_zone_of(solution, side, rack=solution.rack)
+                areas[side] = buildable(zone, solution, side)
         for side, area in areas.items():
             self._floor.set_zone(side, area)
 
@@ -103,10 +106,10 @@ class RackZoneDialog(QDialog):
 
     def __init__(self, document: Document, parent: QWidget | None = None) -> None:
         super().__init__(parent)
-        self.setWindowTitle("Rack zone")
         self._document = document
         self._side: SideName = "left"
-        self._drawn: list[object] = []
+        self._drawn: list[QGraphicsItem] = []
+        self._asked: tuple[object, ...] | None = None
         column = QVBoxLayout(self)
         self.words = QLabel()
         self.words.setWordWrap(True)
@@ -120,13 +123,12 @@ class RackZoneDialog(QDialog):
         column.addWidget(self.legend)
         row = QHBoxLayout()
         self.off_center = LengthControl("Rack &off center", 60.0, document)
-        self.off_center.moved.connect(self._steer)
+        self.off_center.moved.connect(document.set_rack)
         row.addWidget(self.off_center, 1)
         best = QPushButton("Put the pivot on its &best spot")
         best.clicked.connect(self._put_best)
         row.addWidget(best)
         column.addLayout(row)
-        self._rack = 0.0
         self.zone: RackZone | None = None
         self.background = Background(self, wait_ms=60)
         self.background.answered.connect(self.show_zone)
@@ -136,17 +138,26 @@ class RackZoneDialog(QDialog):
         self.resize(640, 560)
         self.ask()
 
-    def _steer(self, rack: float) -> None:
-        self._rack = rack
-        self.off_center.show_value(rack)
-        self.ask()
-
     def ask(self) -> None:
         """Work the full zone out for the car as it now stands."""
         chosen = self._document.selection
-        linked = self._document.layout.linked
-        self._side = chosen[0] if chosen is not None and not linked else "left"
-        solution, side, rack = self._document.solution, self._side, self._rack
+        solution = self._document.solution
+        rack = solution.rack
+        # A mirrored car's sides have one zone only while it goes straight ahead.
+        apart = bool(rack) or not solution.layout.linked
+        side = self._side = chosen[0] if chosen is not None and apart else "left"
+        self.off_center.show_value(rack)
+        parts = ["Rack zone", f"{side} wheel" if apart else "both wheels",
+                 steering_words(rack, self._document.units)]
+        self.setWindowTitle(", ".join(parts))
+        asked = (solution.layout, solution.span, rack, side)
+        if asked == self._asked:
+            return
+        self._asked = asked
+        # What stands belongs to another car; it must not be read as this one's.
+        self.words.setText("Working it out …")
+        for item in self._drawn:
+            item.setOpacity(0.3)
 
         def question(stopped: Callable[[], bool]) -> RackZone:
             return rack_zone_of(solution, side, full=True, rack=rack)
@@ -195,7 +206,7 @@ class RackZoneDialog(QDialog):
             return " No-go shapes cover all of it: nothing is left to build in."
         return " No-go shapes take a part of it; what is tinted can be built."
 
-    def _add(self, item: object) -> None:
+    def _add(self, item: QGraphicsItem) -> None:
         self.plot.addItem(item)
         self._drawn.append(item)
 

@@ -57,6 +57,11 @@ def write_png(
         image = page_image(subject, dpi, background)
     else:
         image = drawing_image(subject, dpi, background=background)
+    save_png(image, path)
+
+
+def save_png(image: QImage, path: str | os.PathLike[str]) -> None:
+    """Write a picture to a PNG file. Raises OutputError."""
     buffer = QBuffer()
     buffer.open(QIODevice.OpenModeFlag.WriteOnly)
     # PySide takes the format as text here though its stubs ask for bytes.

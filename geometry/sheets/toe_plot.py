@@ -25,10 +25,7 @@ _LEFT, _FOOT, _HEAD = 16.0, 10.0, 6.0
 
 def toe_change(solution: Solution, side: SideName) -> Array:
     """Toe against its ride-height value (n,), mm at the tire over the sweep; NaN out of reach."""
-    state = solution.sides[side]
-    toe = BY_KEY["toe"].read(solution, side)
-    ride = 2.0 * state.side.tire.radius * math.sin(float(state.ride.toe[0]))
-    return np.asarray(toe - ride)
+    return BY_KEY["toe change"].read(solution, side)
 
 
 def toe_plot(

@@ -8,7 +8,6 @@ import numpy as np
 import pytest
 from PySide6.QtCore import QPointF, Qt
 from PySide6.QtTest import QTest
-from PySide6.QtWidgets import QDialog
 
 from app.document import Document
 from app.panels.curves import CurvesPanel, label_step, nice_range
@@ -63,9 +62,9 @@ def test_a_drag_past_the_end_stops_at_the_span(panel, document):
 def test_a_double_click_shows_every_curve_large(panel):
     port = panel.plots[0].plot.viewport()
     QTest.mouseDClick(port, Qt.MouseButton.LeftButton, pos=port.rect().center())
-    dialog = panel.findChild(QDialog) or panel._large
+    dialog = panel._large
     assert dialog.isVisible()
-    assert [plot.curve.key for plot in panel._large_plots] == list(BY_KEY)
+    assert [plot.curve.key for plot in panel._large.plots] == list(BY_KEY)
     dialog.close()
 
 

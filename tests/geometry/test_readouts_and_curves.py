@@ -11,11 +11,12 @@ import pytest
 
 from geometry import layout as names
 from geometry.curves import BY_KEY as CURVES_BY_KEY
-from geometry.curves import CURVES, axis_label, curves_to_csv, in_units
+from geometry.curves import CURVES, axis_label, curves_to_csv, in_units, sweep_words
 from geometry.layout import SIDES
 from geometry.readouts import BY_KEY, READOUTS, change_text, format_readout, unit_words
 from geometry.solution import solve
 from geometry.tolerances import tolerance
+from geometry.zones import rack_zone_of
 from tests.sample_cars import CARS, DEGENERATE, PARALLEL_EQUAL, ROADSTER, STRUT_CAR, UNEQUAL_SIDES
 
 
@@ -174,3 +175,40 @@ def test_the_table_of_curves_reads_back_in_the_layout_s_units(name: str) -> None
         else:
             assert camber == ""
     assert not solution.left.sweep.assembles.all()
+
+
+def test_steered_toe_change_is_toe_against_ride_height_at_that_rack() -> None:
+    """Straight ahead nothing but the static toe is between the two; steered, the steering."""
+    car = CARS["rack-set-low"]
+    for rack in (0.0, 25.0, -50.0):
+        solution = solve(car, rack=rack, span=60.0)
+        for side in SIDES:
+            change = CURVES_BY_KEY["toe change"].read(solution, side)
+            ride = float(solve(car, 0.0, rack).sides[side].now.toe[0])
+            for k in (0, 23, 80):
+                travel = float(solution.left.sweep.travel[k])
+                toe = float(solve(car, travel, rack).sides[side].now.toe[0])
+                expected = 2.0 * car.side(side).tire.radius * math.sin(toe - ride)
+                assert change[k] == pytest.approx(expected, abs=1e-9)
+
+
+def test_a_rack_good_straight_ahead_can_be_out_of_its_zone_off_center() -> None:
+    """What the toe change through the travel says steered, the steered zone says too."""
+    car = CARS["healthy-roadster"]
+    outside = set()
+    for rack in (0.0, 25.0, 50.0):
+        solution = solve(car, rack=rack)
+        for side in SIDES:
+            change = CURVES_BY_KEY["toe change"].read(solution, side)
+            kept = float(np.ptp(change)) <= tolerance(car, "toe range")
+            assert rack_zone_of(solution, side, full=True, rack=rack).holds_present == kept
+            if not kept:
+                outside.add(rack)
+    assert 0.0 not in outside and outside
+
+
+def test_curves_say_what_they_go_through() -> None:
+    inches = solve(CARS["healthy-roadster"], rack=-25.4, span=76.2)
+    assert sweep_words(inches) == "Steering 1 in to the right, 3 in of bump and of droop"
+    assert sweep_words(solve(CARS["healthy-roadster"], span=76.2)).startswith("Steering straight,")
+    assert "rolled" in sweep_words(inches, 0.02)
