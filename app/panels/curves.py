@@ -330,8 +330,10 @@ class SweepCaption(QLabel):
         self.setSizePolicy(QSizePolicy.Policy.Ignored, QSizePolicy.Policy.Fixed)
         self._words = ""
 
-    def refresh(self, document: Document) -> None:
+    def refresh(self, document: Document, first: str = "") -> None:
+        """Say it of the document's solution, after the words ``first``, if any."""
         words = sweep_words(document.solution, document.roll)
+        words = f"{first} · {words}" if first else words
         if document.found_solution is not None:
             words += " · solid: as planned, dashed: as found"
         if words != self._words:
@@ -369,7 +371,7 @@ class CurvesPanel(QWidget):
             plot.plot.enlarged.connect(self.enlarge)
             self.plots.append(plot)
             row.addWidget(plot)
-        self._least_height()
+        self._alone = False
         self.setSizePolicy(QSizePolicy.Policy.Ignored, QSizePolicy.Policy.Preferred)
         self._large: LargeCurves | None = None
         document.solved.connect(self.refresh)
@@ -384,7 +386,7 @@ class CurvesPanel(QWidget):
         self.plots[0].show_curve(BY_KEY[STEERED_TOE if self._document.rack else TOE])
         if self.plots[0].curve is not had:
             self._fit_number()
-        self.caption.refresh(self._document)
+        self._say()
         for plot in self.plots:
             plot.refresh()
 
@@ -395,12 +397,7 @@ class CurvesPanel(QWidget):
     def changeEvent(self, event: QEvent) -> None:
         super().changeEvent(event)
         if event.type() == QEvent.Type.FontChange and hasattr(self, "plots"):
-            self._least_height()
             self._fit_number()
-
-    def _least_height(self) -> None:
-        """Room for a plot below two lines of words, however large the letters are."""
-        self.setMinimumHeight(LEAST_PLOT + 2 * self.fontMetrics().height() + 6)
 
     def _fit_number(self) -> None:
         """As many curves as have room to be read; all of them are in the large window."""
@@ -411,6 +408,16 @@ class CurvesPanel(QWidget):
         fitting = max(1, (self.width() + 6) // (max(needed + 16, 130) + 6))
         for number, plot in enumerate(self.plots):
             plot.setVisible(number < fitting)
+        # A lone plot has its name in the caption: at large letters each line counts.
+        self._alone = fitting == 1
+        self.plots[0].title.setVisible(not self._alone)
+        lines = 1 if self._alone else 2
+        self.setMinimumHeight(LEAST_PLOT + lines * letters.height() + 6)
+        self._say()
+
+    def _say(self) -> None:
+        first = axis_label(self.plots[0].curve, self._document.units) if self._alone else ""
+        self.caption.refresh(self._document, first)
 
     def showEvent(self, event: QShowEvent) -> None:
         super().showEvent(event)

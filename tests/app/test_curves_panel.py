@@ -113,3 +113,19 @@ def test_ranges_are_round_and_hold_the_curve(low, high):
     assert bottom <= low < high <= top
     assert top - bottom < 2.0 * (high - low)
     assert (top - bottom) / label_step(bottom, top, 6) <= 6.0 + 1e-9
+
+
+def test_a_lone_curve_has_its_name_in_the_caption(panel, document, qtbot):
+
+    def narrow() -> bool:
+        # With each curve that goes a window of its own can become narrower.
+        panel.resize(150, 200)
+        return not panel.plots[0].title.isVisible()
+
+    qtbot.waitUntil(narrow)
+    document.set_rack(25.4)
+    document.settle()
+    assert panel.caption.accessibleName().startswith("Toe change, in · Steering 1 in to the left")
+    panel.resize(900, 200)
+    qtbot.waitUntil(panel.plots[0].title.isVisible)
+    assert panel.caption.accessibleName().startswith("Steering 1 in")
