@@ -167,6 +167,9 @@ class LockPlot(QWidget):
         if plan is None:
             for item in (self._line, self._other, self._ideal, self._cursor):
                 item.setPath(QPainterPath())
+            # Numbers along the edges would be of nothing.
+            for edge in ("left", "bottom"):
+                self.plot.getPlotItem().getAxis(edge).setTicks([[]])
             return
         x = plan.rack / self._scale
         lines = self.curve.read(plan)

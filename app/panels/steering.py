@@ -18,6 +18,7 @@ from PySide6.QtWidgets import (
 from app.document import Document
 from app.panels.card import Card
 from app.panels.flow import flow_of
+from app.panels.kingpin import KingpinCard
 from app.plan_watch import PlanWatch
 from geometry import plan_words
 from geometry.layout import RELAY_POINTS, SIDES, TIE_INNER, TIE_OUTER, Layout, LayoutError
@@ -129,7 +130,8 @@ class SteeringPanel(Card):
             column.addWidget(label)
         column.addLayout(self._buttons())
         column.addWidget(self.follow)
-        for widget in (self.effect, self.converse, self.rule, self.locks):
+        self.kingpin = KingpinCard()
+        for widget in (self.effect, self.converse, self.rule, self.locks, self.kingpin):
             column.addWidget(widget)
         column.addWidget(self.small)
         column.addStretch(1)
@@ -192,6 +194,7 @@ class SteeringPanel(Card):
             _say(self.turn, f"Turning {now.turn}: inner wheel {degrees(now.inner)}, "
                             f"outer {degrees(now.outer)}{ideal}.")
         self._show_string(layout)
+        self.kingpin.show_car(solution)
         self._enable()
 
     def _show_percent(self, now: float | None) -> None:

@@ -14,6 +14,8 @@ from app.document import Document
 from app.floor.above import AboveView
 from app.panels.percent_dialog import PercentDialog
 from geometry.faces import ABOVE
+from geometry.finding_checks.wording import Wording
+from geometry.kingpin_sketch import kingpin_sketches
 from geometry.layout import LOWER_BALL, SIDES, TIE_INNER, TIE_OUTER, Job, Layout
 from geometry.lengths import parse_length
 from geometry.plan_figures import plan_figures
@@ -301,6 +303,34 @@ def test_the_cards_figures_are_the_geometrys(make_window, qtbot, car):
             assert inches == round(circle.curb_to_curb / INCH)
         else:
             assert float(shown.removesuffix(" m")) == round(circle.curb_to_curb / 1000.0, 2)
+
+
+@pytest.mark.parametrize("car", ["healthy-roadster", "strut-hatch", "unequal-sides"])
+def test_the_kingpin_is_drawn_with_its_figures(make_window, qtbot, car):
+    window = make_window(SAMPLES[car])
+    window.show_floor("above")
+    solution = window.document.solution
+    sides = SIDES[:1] if solution.layout.linked else SIDES
+    texts = window.steering_panel.kingpin.texts()
+    assert len(texts) == 2 * len(sides)
+    for side in sides:
+        state = solution.sides[side]
+        words = Wording(solution.layout.units)
+        front, side_view = kingpin_sketches(state)
+        # The drawn axis goes through both of its joints, as measured.
+        upper = "strut top mount" if state.side.is_strut else "upper ball joint"
+        for name in ("lower ball joint", upper):
+            point = state.side[name]
+            over, _ = front.axis(point.up)
+            assert over == pytest.approx(point.over - float(state.ride.half_track[0]), abs=0.5)
+            rearward, _ = side_view.axis(point.up)
+            contact = float(state.ride.contact[0, 0])
+            assert rearward == pytest.approx(contact - point.fore, abs=0.5)
+        said = " ".join(texts)
+        for figure in (state.ride.scrub_radius, state.ride.mechanical_trail):
+            assert words.tape(float(figure[0])) in said
+        for angle in (state.ride.kingpin_inclination, state.ride.caster):
+            assert words.angle(float(angle[0])) in said
 
 
 def test_the_string_check_follows_the_drag_and_needs_no_worker(window):
