@@ -60,11 +60,13 @@ class Brief:
 
 @dataclass(frozen=True)
 class Sketch:
-    """A starting front end, and in words what of the brief it meets and what it misses."""
+    """A starting front end; in words what of the brief it meets, what it misses, and what else
+    is worth knowing of it that nothing was wanted for."""
 
     layout: Layout
     met: tuple[str, ...]
     missed: tuple[str, ...]
+    facts: tuple[str, ...] = ()
 
 
 def sketch(brief: Brief) -> Sketch:
@@ -88,8 +90,7 @@ def sketch(brief: Brief) -> Sketch:
             "No arms between this frame and this knuckle reach the whole travel. Try a narrower "
             "frame, less travel, or other ball-joint heights."
         )
-    met, missed = _report(brief, best[1])
-    return Sketch(best[1], met, missed)
+    return _report(brief, best[1])
 
 
 def _check(brief: Brief) -> None:
@@ -211,11 +212,12 @@ def _movement(solution: Solution) -> float:
     return float(np.max(heights) - np.min(heights))
 
 
-def _report(brief: Brief, car: Layout) -> tuple[tuple[str, ...], tuple[str, ...]]:
+def _report(brief: Brief, car: Layout) -> Sketch:
     words = Wording(brief.units)
     solution = solve(car, span=brief.span)
     met: list[str] = []
     missed: list[str] = []
+    facts: list[str] = []
 
     def judge(good: bool, text: str) -> None:
         (met if good else missed).append(text)
@@ -242,12 +244,12 @@ def _report(brief: Brief, car: Layout) -> tuple[tuple[str, ...], tuple[str, ...]
             f"Toe change {words.fine(toe)} over {words.tape(brief.span)} each way, "
             f"at most {words.fine(limit)} wanted.",
         )
-    met.append(f"The roll center moves {words.tape(_movement(solution))} over that travel.")
+    facts.append(f"The roll center moves {words.tape(_movement(solution))} over that travel.")
     for arm in ("lower", "upper"):
         pivot, ball = car.left[f"{arm} inner pivot"], car.left[f"{arm} ball joint"]
         length = math.dist(pivot, ball)
-        judge(
-            length >= LEAST_ARM - 0.5 and pivot.up > 0.0,
+        possible = length >= LEAST_ARM - 0.5 and pivot.up > 0.0
+        (facts if possible else missed).append(
             f"{arm.capitalize()} arm {words.tape(length)} long, its bushing "
             f"{words.tape(pivot.over)} over and {words.signed_tape(pivot.up)} up.",
         )
@@ -259,9 +261,9 @@ def _report(brief: Brief, car: Layout) -> tuple[tuple[str, ...], tuple[str, ...]
             "long, or a wider frame.",
         )
     tie = car.left[names.TIE_INNER]
-    judge(
-        0.0 < tie.over < car.left[names.TIE_OUTER].over,
+    possible = 0.0 < tie.over < car.left[names.TIE_OUTER].over
+    (facts if possible else missed).append(
         f"Rack {words.tape(2.0 * tie.over)} between its inner pivots, {words.signed_tape(tie.up)} "
         f"up, {words.tape(tie.fore)} {'ahead of' if tie.fore > 0 else 'behind'} the axle line.",
     )
-    return tuple(met), tuple(missed)
+    return Sketch(car, tuple(met), tuple(missed), tuple(facts))

@@ -67,6 +67,8 @@ class QuantityField(QWidget):
         self._first = self.field.text()
         self.field.setPlaceholderText("not given" if blank else "")
         self.field.setAccessibleName(f"{name}, {_unit(kind, units)}")
+        # A sign that is cut off would make another figure of it.
+        self.field.setMinimumWidth(self.field.fontMetrics().horizontalAdvance("−12 15/16") + 12)
         column.addWidget(self.field)
         self.reason = QLabel()
         self.reason.setObjectName("refusal")

@@ -24,7 +24,8 @@ _LENGTHS = (
     ("scrub_radius", "Scrub radius", 2.5, "Tire's middle outboard of the kingpin axis"),
     ("steering_arm", "Steering arm behind the axis", 5.0, "Negative: ahead of the axle"),
     ("frame_half", "&Lower bushing over", 9.5, "Half the width of the frame there"),
-    ("upper_frame_half", "Upper bushing over (blank: choose)", None, "Blank: least moving"),
+    ("upper_frame_half", "Upper bushing over", None,
+     "Blank: where the roll center moves least through the travel"),
     ("roll_center", "Roll center wanted, up", 2.0, ""),
     ("span", "Travel each way", 3.0, ""),
 )
@@ -33,7 +34,7 @@ _ANGLES = (
     ("caster", "&Caster", 4.0),
     ("static_camber", "Static camber", -0.5),
     ("static_toe", "Static toe, a wheel", 0.05),
-    ("camber_gain", "Camber gain wanted, per inch (25 mm) of bump", 0.75),
+    ("camber_gain", "Camber gain per inch (25 mm)", 0.75),
 )
 
 
@@ -117,6 +118,7 @@ class SketchDialog(QDialog):
         if self._made is not None:
             lines = [f"✓ {words}" for words in self._made.met]
             lines += [f"✗ {words}" for words in self._made.missed]
+            lines += [f"• {words}" for words in self._made.facts]
             self.answer.setText("\n".join(lines))
         self.ok.setEnabled(self._made is not None)
 

@@ -45,6 +45,9 @@ def test_the_car_has_what_the_brief_wanted():
     assert solve(made.layout).ride_roll_center[1] == pytest.approx(60.0, abs=0.1)
     assert 1.0 / ride.ride_view.swing_arm[0] == pytest.approx(BRIEF.camber_gain, rel=1e-3)
     assert made.missed == ()
+    # Met is only what was wanted; how far the roll center moves is told without a judgment.
+    assert [words.split()[0] for words in made.met] == ["Roll", "Camber", "Toe"]
+    assert any("roll center moves" in words for words in made.facts)
 
 
 def test_the_tie_rod_stands_at_its_best_fit():
@@ -125,4 +128,4 @@ def test_any_sensible_brief_is_met_or_said_to_be_missed(center, gain, frame, inc
         assert reason.endswith(".")
         return
     assert solve(made.layout).assembles
-    assert not any("nan" in words for words in (*made.met, *made.missed))
+    assert not any("nan" in words for words in (*made.met, *made.missed, *made.facts))
