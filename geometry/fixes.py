@@ -363,6 +363,8 @@ class _Bench:
         ]
         costs = costs_of(self.layout, [car for _, car in made], self.side)
         out = [self._fix(one, car, cost) for (one, car), cost in zip(made, costs, strict=True)]
+        # The quick motion judges a pose that the parts may not quite reach: then it is no fix.
+        out = [fix for fix in out if fix.toe_range < (self.present or 0.0)]
         # What runs a pivot into a no-go shape stays on the list, but last.
         out.sort(key=lambda fix: bool(fix.costs.runs_into))
         if not out and not trouble and done:

@@ -29,6 +29,7 @@ from geometry.plan_view import plan_of
 from geometry.shop_moves import KINDS, SPACERS, TALLER, allowed_kinds, amounts
 from geometry.solution import solve
 from geometry.tolerances import camber_gain
+from tests.fuzz.strange_cars import car as strange_car
 from tests.sample_cars import CARS, DEGENERATE, ROADSTER
 
 INCH = MM_PER_INCH
@@ -385,3 +386,13 @@ def test_a_tie_rod_of_no_leverage_is_answered_in_words():
     points = {**side.points, TIE_OUTER: side[LOWER_BALL], TIE_INNER: side[LOWER_BALL]}
     found = fix_list(replace(car, left=replace(side, points=points)))
     assert found is not None and found.trouble.endswith(".")
+
+
+def test_a_move_whose_car_does_not_go_through_its_travel_is_no_fix():
+    # Found by the strange cars: its toe change was no number, and was shown.
+    car, _ = strange_car(np.random.default_rng([3, 82]))
+    found = fix_list(car)
+    assert found is not None
+    for fix in found.fixes:
+        assert math.isfinite(fix.toe_range) and np.isfinite(fix.toe).all()
+        assert "nan" not in fix.remains_words("in")
