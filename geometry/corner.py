@@ -8,9 +8,9 @@ batch of corners solved together (empty for a single one), n the number of poses
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, fields
 from functools import cached_property
-from typing import Protocol
+from typing import Any, Protocol
 
 import numpy as np
 
@@ -37,6 +37,10 @@ SWING_STEPS = 121
 
 STOP_REACH = 40.0
 """How near a stop, mm of travel, a pose that was not found at once is looked for by halving."""
+
+BLOCK = 16384
+"""So many poses are worked on at a time: what a sweep needs of them then stays in the
+processor's cache, and a sweep of a million costs no more a pose than one of ten thousand."""
 
 MISSED_TRAVEL = 1e-6
 """How far the wheel may be off its travel in a pose that counts, mm: rounding in huge cars."""
@@ -107,6 +111,17 @@ class Poses:
         else:
             points[names.STRUT_LOWER] = self.strut_lower
         return points
+
+
+def joined(parts: list[Poses]) -> Poses:
+    """Poses that follow one another, as one."""
+    if len(parts) == 1:
+        return parts[0]
+    columns: dict[str, Any] = {}
+    for field in fields(Poses):
+        pieces = [getattr(part, field.name) for part in parts]
+        columns[field.name] = None if pieces[0] is None else np.concatenate(pieces, axis=-1)
+    return Poses(**columns)
 
 
 class Guide(Protocol):
@@ -394,7 +409,7 @@ class Corner:
             gap = gap - target
         found = (np.abs(gap) < 10.0 * TRAVEL_TOLERANCE) & (margin >= 0.0)
         found &= (now > low) & (now < high)
-        if np.any(~found & self._near_a_stop(travel)):
+        if not found.all() and np.any(~found & self._near_a_stop(travel)):
             halved, there = self._swing_by_halves(target, inner)
             now, found = np.where(found, now, halved), found | there
         return now, np.asarray(found)
@@ -441,13 +456,26 @@ class Corner:
             inner = inner + shift
         shape = np.broadcast_shapes((*self.cars, 1), travel.shape, inner.shape[1:])
         travel = np.broadcast_to(travel, shape)
+        inner = np.broadcast_to(inner, (3, *shape))
+        wide = max(1, BLOCK // max(1, int(np.prod(self.cars))))
+        return joined(
+            [
+                self._block_of_poses(
+                    travel[..., start : start + wide], inner[..., start : start + wide]
+                )
+                for start in range(0, max(1, shape[-1]), wide)
+            ]
+        )
+
+    def _block_of_poses(self, travel: Array, inner: Array) -> Poses:
+        """The poses for travels (*cars, n) and inner tie-rod ends (3, *cars, n)."""
         with np.errstate(all="ignore"):
             swing, found = self.swing_for(travel, inner)
             # At ride height the arm stands as it was measured, whatever rounding makes of a
             # wheel whose height hardly depends on it there.
             measured = (travel == 0.0) & np.all(inner == self.tie_inner, axis=0)
             swing = np.where(measured, 0.0, swing)
-            return self._poses_at(travel, swing, np.broadcast_to(inner, (3, *shape)), found)
+            return self._poses_at(travel, swing, inner, found)
 
     @cached_property
     def _size(self) -> Array:

@@ -34,34 +34,33 @@ def constraints(side: Side, travel: float, shift: np.ndarray):
     """The six gaps, mm, of a knuckle pose (three places, three turns) from all constraints."""
     ride = {name: space(p) for name, p in side.points.items()}
     wheel = ride[names.WHEEL_CENTER]
+    ends = [("lower", names.LOWER_BALL)] + [("upper", names.UPPER_BALL)] * (not side.is_strut)
+    arms = [
+        (ball, bushing, np.linalg.norm(ride[ball] - bushing))
+        for arm, ball in ends
+        for bushing in bushings(side, arm)
+    ]
+    if side.is_strut:
+        axis = ride[names.STRUT_TOP] - ride[names.STRUT_LOWER]
+        across = np.cross(axis / np.linalg.norm(axis), (1.0, 0.0, 0.0))
+        across /= np.linalg.norm(across)
+        third = np.cross(axis / np.linalg.norm(axis), across)
+    rod = np.linalg.norm(ride[names.TIE_OUTER] - ride[names.TIE_INNER])
+    upper = names.STRUT_LOWER if side.is_strut else names.UPPER_BALL
+    carried_names = (names.LOWER_BALL, upper, names.TIE_OUTER)
 
     def carried(pose: np.ndarray, place: np.ndarray) -> np.ndarray:
         return pose[:3] + wheel + Rotation.from_rotvec(pose[3:]).apply(place - wheel)
 
     def gaps(pose: np.ndarray) -> np.ndarray:
-        out = []
-        lower = carried(pose, ride[names.LOWER_BALL])
-        for bushing in bushings(side, "lower"):
-            length = np.linalg.norm(ride[names.LOWER_BALL] - bushing)
-            out.append(np.linalg.norm(lower - bushing) - length)
+        turn = Rotation.from_rotvec(pose[3:])
+        hub = pose[:3] + wheel
+        now = {name: hub + turn.apply(ride[name] - wheel) for name in carried_names}
+        out = [np.linalg.norm(now[ball] - bushing) - length for ball, bushing, length in arms]
         if side.is_strut:
-            axis = ride[names.STRUT_TOP] - ride[names.STRUT_LOWER]
-            across = np.cross(axis / np.linalg.norm(axis), (1.0, 0.0, 0.0))
-            across /= np.linalg.norm(across)
-            third = np.cross(axis / np.linalg.norm(axis), across)
-            turn = Rotation.from_rotvec(pose[3:])
-            foot = carried(pose, ride[names.STRUT_LOWER])
-            out += [
-                float((ride[names.STRUT_TOP] - foot) @ turn.apply(edge)) for edge in (across, third)
-            ]
-        else:
-            upper = carried(pose, ride[names.UPPER_BALL])
-            for bushing in bushings(side, "upper"):
-                length = np.linalg.norm(ride[names.UPPER_BALL] - bushing)
-                out.append(np.linalg.norm(upper - bushing) - length)
-        rod = np.linalg.norm(ride[names.TIE_OUTER] - ride[names.TIE_INNER])
-        outer = carried(pose, ride[names.TIE_OUTER])
-        out.append(np.linalg.norm(outer - ride[names.TIE_INNER] - shift) - rod)
+            foot = ride[names.STRUT_TOP] - now[names.STRUT_LOWER]
+            out += [float(foot @ turn.apply(edge)) for edge in (across, third)]
+        out.append(np.linalg.norm(now[names.TIE_OUTER] - ride[names.TIE_INNER] - shift) - rod)
         out.append(pose[2] - travel)
         return np.array(out)
 
