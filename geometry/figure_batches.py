@@ -15,7 +15,6 @@ import numpy as np
 from geometry import layout as names
 from geometry.corner import Corner, Poses, contact_point, ground_offsets
 from geometry.front_view import FrontView, front_view, roll_center
-from geometry.inner_pivot import held_travel, toe_of
 from geometry.inner_pivot import toe_range as peak_to_peak
 from geometry.layout import Side
 from geometry.linkage import Array
@@ -112,11 +111,10 @@ class CarBatch:
 
     def toe_curve(self) -> Array:
         """Toe (k, n) through the travel, rad, the steering centered."""
-        motion = held_travel(self.corner, self.travel)
-        return toe_of(motion, self.corner, self.corner.tie_inner[1:])[:, 0]
+        return self.corner.poses(self.travel).toe
 
     def toe_range(self) -> Array:
-        return toe_length(self.side, peak_to_peak(self.toe_curve()))
+        return range_of("toe range", self.toe_curve(), self.side)
 
     def lower_arm_slope(self) -> Array:
         a, b = self.ride_view.lower_line[0, :, 0], self.ride_view.lower_line[1, :, 0]
@@ -153,8 +151,7 @@ car where its peak to peak has kinks."""
 
 def range_of(figure: str, curve: Array, side: Side) -> Array:
     """A figure of CURVES (...) from its curve (..., n)."""
-    size = peak_to_peak(curve)
-    return toe_length(side, size) if figure == "toe range" else size
+    return peak_to_peak(toe_length(side, curve) if figure == "toe range" else curve)
 
 
 def figures_of(batch: CarBatch, figure: str) -> Array:
