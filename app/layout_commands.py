@@ -28,6 +28,7 @@ class LayoutCommands(QObject):
             ("stance", "&Lower or raise…", self.stance, "Ctrl+D"),
             ("wheel", "&Tire and wheel…", self.wheel, ""),
             ("loads", "&Weights and springs…", self.loads, ""),
+            ("springs", "&Springs, joints and tie rods…", self.springs, ""),
             ("no-go", "&No-go shapes…", self.no_go, ""),
             ("draw no-go", "Dr&aw a no-go shape", self.draw_no_go, "Ctrl+E"),
             ("draw box", "Draw a no-go bo&x", self.draw_box, "Ctrl+Shift+E"),
@@ -106,6 +107,11 @@ class LayoutCommands(QObject):
         from app.panels.loads_dialog import LoadsDialog
 
         self._run(LoadsDialog(self.document, self.window))
+
+    def springs(self) -> None:
+        from app.panels.springs_dialog import SpringsDialog
+
+        self._run(SpringsDialog(self.document, self.window))
 
     def no_go(self) -> None:
         from app.panels.no_go_dialog import NoGoDialog

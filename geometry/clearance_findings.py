@@ -11,6 +11,7 @@ from geometry.finding_checks.finding import Finding, Severity
 from geometry.finding_checks.wording import Wording
 from geometry.joints import joint_swings
 from geometry.layout import SIDES, Layout
+from geometry.spring_words import JOINT_LIMITS
 from geometry.springs import spring_motion, stroke_words
 from geometry.tolerances import tolerance, tolerance_source
 
@@ -85,18 +86,14 @@ def _room(one: Clearance, words: Wording) -> Finding:
     )
 
 
-_JOINT_LIMITS = {"lower ball joint": "ball joint swing", "upper ball joint": "ball joint swing",
-                 "tie rod outer": "rod end swing", "tie rod inner": "rod end swing"}
-
-
 def _joints(poses: PoseSet, words: Wording) -> list[Finding]:
     out: list[Finding] = []
     for side in SIDES:
         for joint in joint_swings(poses.corners[side], poses.poses[side]):
-            limit = tolerance(poses.layout, _JOINT_LIMITS[joint.name])
+            limit = tolerance(poses.layout, JOINT_LIMITS[joint.name])
             if not math.isfinite(joint.most) or joint.most <= limit:
                 continue
-            source = tolerance_source(poses.layout, _JOINT_LIMITS[joint.name])
+            source = tolerance_source(poses.layout, JOINT_LIMITS[joint.name])
             out.append(
                 Finding(
                     code="joint-swing",

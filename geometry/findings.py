@@ -15,6 +15,7 @@ from geometry.finding_checks.finding import SEVERITIES, Cure, Finding, Move, Sev
 from geometry.finding_checks.wording import Wording
 from geometry.layout import SIDES
 from geometry.solution import Solution
+from geometry.tie_rod_thread import thread_findings
 
 __all__ = ["SEVERITIES", "Cure", "Finding", "Move", "Severity", "findings"]
 
@@ -58,3 +59,4 @@ def _all(solution: Solution) -> Iterator[Finding]:
         yield from roll.check(subjects)
     yield from steering.check(subjects[0])
     yield from targets.check(subjects)
+    yield from thread_findings(solution.layout)

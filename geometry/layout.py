@@ -111,6 +111,20 @@ class Spring:
     longest: float | None = None
 
 
+@dataclass(frozen=True)
+class TieRod:
+    """The thread of a tie rod's adjuster, mm; None means not given.
+
+    ``thread_engaged`` is what was in hold when the rod was ``measured_length`` long from
+    center to center; ``least_engaged`` is wanted, by default from ``thread_diameter``.
+    """
+
+    thread_engaged: float | None = None
+    thread_diameter: float | None = None
+    least_engaged: float | None = None
+    measured_length: float | None = None
+
+
 def _points(points: Mapping[str, Point | tuple[float, ...]]) -> Mapping[str, Point]:
     return MappingProxyType({name: Point(*map(float, p)) for name, p in points.items()})
 
@@ -129,6 +143,7 @@ class Side:
     static_camber: float = 0.0
     static_toe: float = 0.0
     spring: Spring = field(default_factory=Spring)
+    tie_rod: TieRod = field(default_factory=TieRod)
 
     def __post_init__(self) -> None:
         object.__setattr__(self, "points", _points(self.points))

@@ -29,6 +29,7 @@ from geometry.layout import (
     Side,
     Spring,
     Target,
+    TieRod,
     Tire,
     clashing_points,
     needed_points,
@@ -99,6 +100,17 @@ _SPRING = Record(
     ),
     name="spring",
 )
+_THREAD = Maybe(length(low=0.0))
+_TIE_ROD = Record(
+    TieRod,
+    (
+        Field("thread engaged", "thread_engaged", _THREAD, None),
+        Field("thread diameter", "thread_diameter", _THREAD, None),
+        Field("least engaged", "least_engaged", _THREAD, None),
+        Field("measured length", "measured_length", _THREAD, None),
+    ),
+    name="tie rod",
+)
 _SIDE = Record(
     Side,
     (
@@ -107,6 +119,7 @@ _SIDE = Record(
         Field("static toe", "static_toe", Angle(45.0), 0.0),
         Field("tire", "tire", _TIRE),
         Field("spring", "spring", _SPRING, Spring()),
+        Field("tie rod", "tie_rod", _TIE_ROD, TieRod()),
     ),
     name="side",
 )
@@ -260,7 +273,8 @@ _JOB = Record(
 
 
 _RECORDS: tuple[Record[Any], ...] = (
-    _LAYOUT, _SIDE, records.POINT, _TIRE, _SPRING, _RACK, _RELAY, _LOADS, _NO_GO, *_Target.records,
+    _LAYOUT, _SIDE, records.POINT, _TIRE, _SPRING, _TIE_ROD, _RACK, _RELAY, _LOADS, _NO_GO,
+    *_Target.records,
 )
 
 
