@@ -90,7 +90,7 @@ class SpringsDialog(QDialog):
         add("thread_engaged", "Tie-rod &thread in hold", "length", rod.thread_engaged,
             check=_not_less, tip="Measured at the adjuster, at the end that has less")
         add("measured_length", "at a tie-rod length of", "length",
-            self._measured_length(), check=_positive,
+            self._measured_length(), check=_not_less,
             tip="Center to center, when the thread was measured: as found unless typed")
         add("thread_diameter", "Thread &diameter", "length", rod.thread_diameter,
             check=_positive)
