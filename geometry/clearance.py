@@ -16,9 +16,10 @@ import shapely
 from shapely.geometry.base import BaseGeometry
 
 from geometry import layout as names
-from geometry.corner import Corner, Poses
-from geometry.layout import MM_PER_INCH, SIDES, Layout, NoGo, SideName
+from geometry.corner import Corner, Poses, space
+from geometry.layout import MM_PER_INCH, SIDES, Layout, NoGo, Side, SideName
 from geometry.linkage import Array, dot
+from geometry.springs import lower_mount
 from geometry.steering import inner_shifts
 
 View = Literal["front", "above"]
@@ -74,7 +75,11 @@ class Clearance:
 def pose_set(
     layout: Layout, span: float, rack_reach: float = 0.0, travels: int = 9, racks: int = 3
 ) -> PoseSet:
-    """Poses over the travel from -span to span and the rack from -reach to reach, in one solve."""
+    """Poses over the travel from -span to span and the rack from -reach to reach, in one solve.
+
+    No-go shapes stand on the body, and each side's parts follow that side's travel alone:
+    body roll and single-wheel bump bring no place that the travel of each side does not.
+    """
     travel = np.linspace(-span, span, travels)
     rack = np.linspace(-rack_reach, rack_reach, racks) if rack_reach else np.zeros(1)
     grid_rack, grid_travel = (g.ravel() for g in np.meshgrid(rack, travel, indexing="ij"))
@@ -93,13 +98,13 @@ def _flat(places: Array, side: SideName, view: View) -> Array:
     return np.stack(np.broadcast_arrays(x, places[2] if view == "front" else places[0]), axis=-1)
 
 
-def _capsules(a: Array, b: Array, radius: float) -> Array:
+def _capsules(a: Array, b: Array, radius: float, ends: Literal["round", "flat"] = "round") -> Array:
     """Tubes (n,) between places (n, 2); None where a place is missing."""
     good = np.isfinite(a).all(axis=-1) & np.isfinite(b).all(axis=-1)
     out = np.full(len(a), None, dtype=object)
     if good.any():
         lines = shapely.linestrings(np.stack([a[good], b[good]], axis=1))
-        out[good] = shapely.buffer(lines, radius, quad_segs=6)
+        out[good] = shapely.buffer(lines, radius, quad_segs=6, cap_style=ends)
     return out
 
 
@@ -136,6 +141,14 @@ def arm_pivot_names(corner: Corner, arm: str) -> list[str]:
     return [key for key in keys if key in corner.points]
 
 
+def spring_ends(side: Side, corner: Corner, poses: Poses) -> tuple[Array, Array] | None:
+    """The spring's or coil-over's mounts (3, n) in each pose; None where they weren't given."""
+    if names.SPRING_TOP not in side.points or names.SPRING_LOWER not in side.points:
+        return None
+    foot = lower_mount(side, corner, poses)
+    return np.broadcast_to(space(side[names.SPRING_TOP])[:, None], foot.shape), foot
+
+
 def part_outlines(poses: PoseSet, view: View) -> Iterator[tuple[str, SideName | None, Array]]:
     """Each moving part's outline (n,) on a floor in every pose: (part, side, geometries).
 
@@ -159,6 +172,11 @@ def part_outlines(poses: PoseSet, view: View) -> Iterator[tuple[str, SideName | 
         if state.strut_lower is not None:
             yield "strut", side, tubes(state.upper_ball, state.strut_lower, STRUT_RADIUS)
         yield "tie rod", side, tubes(state.tie_inner, state.tie_outer, TIE_ROD_RADIUS)
+        spring = spring_ends(layout_side, corner, state)
+        if spring is not None:
+            # A coil ends at its seats, so that nothing stands out past the mounts.
+            top, foot = (_flat(end, side, view) for end in spring)
+            yield "spring", side, _capsules(top, foot, SPRING_RADIUS, "flat")
         yield "tire", side, _tire_outlines(state, side, view, layout_side.tire)
         ends[side] = _flat(state.tie_inner, side, view)
     steering = "relay rod" if isinstance(poses.layout.steering, names.RelayRod) else "rack"
@@ -272,6 +290,9 @@ def tire_clearances(poses: PoseSet) -> Iterator[Clearance]:
             for name in arm_pivot_names(corner, arm):
                 pivot = np.broadcast_to(corner.points[name], ball.shape)
                 rods.append((f"{arm} arm", pivot, ball, ARM_RADIUS))
+        spring = spring_ends(poses.layout.side(side), corner, state)
+        if spring is not None:
+            rods.append(("spring", *spring, SPRING_RADIUS))
         for part, a, b, radius in rods:
             rooms = tire_room(state, poses.layout.side(side).tire, a, b) - radius
             if np.any(np.isfinite(rooms)):

@@ -18,10 +18,11 @@ from geometry.finding_checks.finding import SEVERITIES, Finding
 from geometry.findings import findings
 from geometry.front_view import FrontView, front_view, roll_center
 from geometry.layout import MM_PER_INCH, SIDE_POINTS, SIDES, Layout, Side, UnitName
-from geometry.linkage import Array, rigid_coefficients, rigid_place
+from geometry.linkage import Array
 from geometry.plan_findings import plan_findings
 from geometry.plan_view import plan_view
 from geometry.solution import SPAN, CornerState, Solution, solve
+from geometry.springs import lower_mount
 from geometry.steering import inner_shifts
 
 PROGRAM = "bobline"
@@ -165,43 +166,12 @@ def pose_points(side: Side, corner: Corner, poses: Poses) -> dict[str, Array]:
         if name not in side.points:
             continue
         if name == names.SPRING_LOWER:
-            out[name] = _spring_lower(side, corner, poses)
+            out[name] = lower_mount(side, corner, poses)
         elif name in moved:
             out[name] = moved[name]
         else:
             out[name] = space(side[name])[:, None] * still
     return out
-
-
-def _spring_lower(side: Side, corner: Corner, poses: Poses) -> Array:
-    """The spring's lower mount (3, n), carried by an arm or by the knuckle."""
-    place = space(side[names.SPRING_LOWER])[:, None]
-    carrier = side.spring.lower_mount_on
-    if carrier == "lower arm" or (carrier == "upper arm" and not side.is_strut):
-        ball, moved = (
-            (corner.lower_ball, poses.lower_ball)
-            if carrier == "lower arm"
-            else (corner.upper_ride, poses.upper_ball)
-        )
-        front, rear = corner.axis_of("lower" if carrier == "lower arm" else "upper")
-        return _carried(place, (rear, front, ball), (rear, front, moved))
-    upper = corner.points[names.STRUT_LOWER if side.is_strut else names.UPPER_BALL]
-    upper_moved = poses.upper_ball if poses.strut_lower is None else poses.strut_lower
-    return _carried(
-        place,
-        (corner.lower_ball, upper, corner.tie_outer),
-        (poses.lower_ball, upper_moved, poses.tie_outer),
-    )
-
-
-def _carried(
-    place: Array, before: tuple[Array, Array, Array], after: tuple[Array, Array, Array]
-) -> Array:
-    """A place (3, n) that rides with three points of one rigid part."""
-    local = rigid_coefficients(before[1] - before[0], before[2] - before[0], place - before[0])
-    first, second = after[1] - after[0], after[2] - after[0]
-    normal = np.cross(first, second, axis=0)
-    return np.asarray(after[0] + rigid_place(local, first, second, normal))
 
 
 def _tie_rod(state: CornerState, span: float, scale: float) -> dict[str, Any]:

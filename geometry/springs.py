@@ -39,7 +39,7 @@ def lower_mount(side: Side, corner: Corner, poses: Poses) -> Array:
     """Where the spring's lower mount stands (3, n) in each pose, on the part that carries it."""
     mount = space(side[names.SPRING_LOWER])[:, None]
     carrier = side.spring.lower_mount_on
-    if carrier == "knuckle":
+    if carrier == "knuckle" or (carrier == "upper arm" and corner.is_strut):
         first, second = corner.upper_ride - corner.lower_ball, corner.tie_outer - corner.lower_ball
         if corner.is_strut and poses.strut_lower is not None:
             # The upper point of a strut's kingpin slides; its lower mount rides on the knuckle.

@@ -13,6 +13,7 @@ from geometry import layout as names
 from geometry.clearance import (
     ARM_RADIUS,
     RACK_RADIUS,
+    SPRING_RADIUS,
     STRUT_RADIUS,
     TIE_ROD_RADIUS,
     TIRE_ROOM,
@@ -114,7 +115,7 @@ def test_parts_have_their_names_and_round_ends() -> None:
     parts = {part for part, _, _ in part_outlines(pose_set(STRUT_CAR, 10.0), "front")}
     assert parts == {"lower arm", "strut", "tie rod", "tire", "rack"}
     parts = {part for part, _, _ in part_outlines(pose_set(RELAY_CAR, 10.0), "above")}
-    assert parts == {"lower arm", "upper arm", "tie rod", "tire", "relay rod"}
+    assert parts == {"lower arm", "upper arm", "tie rod", "spring", "tire", "relay rod"}
 
 
 def test_the_tire_s_outline_is_as_wide_and_as_high_as_the_tire() -> None:
@@ -192,3 +193,43 @@ def test_outlines_that_share_only_an_edge_have_no_depth() -> None:
     assert _depth(mixed) == pytest.approx(2.0, abs=0.1)
     assert _depth(shapely.LineString([(0, 0), (0, 5)])) == 0.0
     assert _depth(shapely.Point(0, 0)) == 0.0
+
+
+@pytest.mark.parametrize("view", ["front", "above"])
+def test_room_to_a_spring_by_sampling_its_coils(view: str) -> None:
+    """Places across and along the spring in each pose, its lower mount carried by the arm."""
+    block = NoGo("block", ((480.0, -260.0), (520.0, -260.0), (500.0, -200.0)), view, "left")
+    if view == "front":
+        block = replace(block, outline=((480.0, 430.0), (530.0, 440.0), (500.0, 480.0)))
+    poses = pose_set(replace(ROADSTER, no_go=(block,)), 60.0, travels=5)
+    found = next(
+        c for c in clearances(poses) if (c.part, c.side, c.thing) == ("spring", "left", "block")
+    )
+    state, corner = poses.poses["left"], poses.corners["left"]
+    top = ROADSTER.left["spring top mount"]
+    foot = ROADSTER.left["spring lower mount"]
+    pivot, ball = (corner.points[n][:, 0] for n in (names.LOWER_INNER, names.LOWER_BALL))
+    least = np.inf
+    for k in range(5):
+        # The arm swings about its fore-aft axis: turn the mount with the ball joint.
+        before, after = (ball - pivot)[1:], (state.lower_ball[:, k] - pivot)[1:]
+        turn = np.arctan2(after[1], after[0]) - np.arctan2(before[1], before[0])
+        arm = complex(foot.over - pivot[1], foot.up - pivot[2]) * np.exp(1j * turn)
+        ends = np.array([[top.over, top.up], [pivot[1] + arm.real, pivot[2] + arm.imag]])
+        if view == "above":
+            ends = np.array([[top.over, top.fore], [ends[1, 0], foot.fore]])
+        along = ends[1] - ends[0]
+        across = np.array([-along[1], along[0]]) / np.linalg.norm(along) * SPRING_RADIUS
+        shares = np.linspace(0.0, 1.0, 120)[:, None]
+        wide = np.linspace(-1.0, 1.0, 60)[:, None, None]
+        places = (ends[0] + shares * along + wide * across).reshape(-1, 2)
+        gaps = np.linalg.norm(places[:, None] - edge(np.array(block.outline), 60)[None], axis=-1)
+        least = min(least, float(gaps.min()))
+    assert found.room == pytest.approx(least, abs=1.5)
+    assert found.room > 5.0
+
+
+def test_a_car_without_a_spring_has_none_in_the_way() -> None:
+    bare = {n: p for n, p in ROADSTER.left.points.items() if not n.startswith("spring")}
+    car = replace(ROADSTER, left=replace(ROADSTER.left, points=bare))
+    assert "spring" not in {part for part, _, _ in part_outlines(pose_set(car, 50.0), "front")}
