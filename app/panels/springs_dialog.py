@@ -48,7 +48,7 @@ class SpringsDialog(QDialog):
         if not self._layout.linked:
             column.addWidget(QLabel(f"The {self._side} side (choose a nail of the other first)."))
         row = QHBoxLayout()
-        fields = _scrolled(self._fields())
+        fields = _scrolled(self._fields(), "Measures and limits")
         # Fields are never pushed out of sight sideways; the table has its own way to scroll.
         fields.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
         fields.setMinimumWidth(self.form.minimumSizeHint().width() + 24)
@@ -125,7 +125,7 @@ class SpringsDialog(QDialog):
         self.words.setWordWrap(True)
         self.words.setAlignment(Qt.AlignmentFlag.AlignTop)
         self.words.setAccessibleName("What the spring, joints and thread come to")
-        column.addWidget(_scrolled(self.words), 3)
+        column.addWidget(_scrolled(self.words, "What follows from them"), 3)
         return column
 
     def changed(self) -> Layout | None:
@@ -190,9 +190,10 @@ class SpringsDialog(QDialog):
             self.accept()
 
 
-def _scrolled(widget: QWidget) -> QScrollArea:
+def _scrolled(widget: QWidget, name: str) -> QScrollArea:
     """At large text what does not fit is scrolled, not cut."""
     area = QScrollArea()
+    area.setAccessibleName(name)
     area.setWidgetResizable(True)
     area.setFrameShape(QScrollArea.Shape.NoFrame)
     area.setWidget(widget)

@@ -411,7 +411,7 @@ def test_the_curves_are_written_as_a_table(window, tmp_path, monkeypatch):
     save_dialog_gives(monkeypatch, tmp_path / "curves.csv")
     window.commands.actions["export curves"].trigger()
     head = (tmp_path / "curves.csv").read_text().splitlines()[0]
-    assert head.startswith("travel (in),toe left (in)")
+    assert head.startswith("travel (in),rack (in),toe left (in)")
 
 
 def test_an_export_that_can_not_be_written_is_told(window, tmp_path, monkeypatch, answers):
