@@ -1,8 +1,8 @@
 """A front end from nothing: tire, track, knuckle, frame and targets in, a starting car out.
 
 The instant center follows from the wanted roll center and camber gain; the arm lines run
-through it; the arms' length ratio is what moves the roll center least; the inner tie-rod
-pivot is the best fit. What could not be met is said.
+through it; the arms' length ratio is what moves the roll center least, as far as the ball
+joints can follow; the inner tie-rod pivot is the best fit. What could not be met is said.
 """
 
 from __future__ import annotations
@@ -14,6 +14,7 @@ import numpy as np
 
 from geometry import layout as names
 from geometry.finding_checks.wording import Wording
+from geometry.joints import joint_swings
 from geometry.layout import Layout, LayoutError, Point, Rack, Side, Tire, UnitName
 from geometry.solution import Solution, solve
 from geometry.tolerances import camber_gain, toe_length, tolerance
@@ -78,13 +79,17 @@ def sketch(brief: Brief) -> Sketch:
     knuckle = _knuckle(brief)
     center = _instant_center(brief)
     lower = _lower_inner(brief, knuckle[names.LOWER_BALL], center)
-    best: tuple[float, Layout] | None = None
+    best: tuple[tuple[float, float], Layout] | None = None
     for over in _upper_overs(brief, knuckle[names.UPPER_BALL]):
         upper = _inner(knuckle[names.UPPER_BALL], center, over)
         car = _with_tie_rod(_car(brief, knuckle, lower, upper), brief.span)
-        movement = _movement(solve(car, span=brief.span))
-        if math.isfinite(movement) and (best is None or movement < best[0]):
-            best = (movement, car)
+        solution = solve(car, span=brief.span)
+        movement = _movement(solution)
+        # An arm whose ball joint can't follow is no arm, however still the roll center stands.
+        too_far = max(0.0, _swing(solution) - tolerance(car, "ball joint swing"))
+        rank = too_far, movement
+        if math.isfinite(sum(rank)) and (best is None or rank < best[0]):
+            best = (rank, car)
     if best is None:
         raise LayoutError(
             "No arms between this frame and this knuckle reach the whole travel. Try a narrower "
@@ -212,6 +217,16 @@ def _movement(solution: Solution) -> float:
     return float(np.max(heights) - np.min(heights))
 
 
+def _swing(solution: Solution) -> float:
+    """How far a ball joint leans from ride height at most, rad, through the travel; NaN out of
+    reach. Steering turns the knuckle about its ball joints and leans neither."""
+    return max(
+        float(np.max(joint.swing))
+        for joint in joint_swings(solution.left.corner, solution.left.sweep)
+        if joint.name in (names.LOWER_BALL, names.UPPER_BALL)
+    )
+
+
 def _report(brief: Brief, car: Layout) -> Sketch:
     words = Wording(brief.units)
     solution = solve(car, span=brief.span)
@@ -222,6 +237,10 @@ def _report(brief: Brief, car: Layout) -> Sketch:
     def judge(good: bool, text: str) -> None:
         (met if good else missed).append(text)
 
+    swing, most = _swing(solution), tolerance(car, "ball joint swing")
+    if swing > most:
+        missed.append(f"A ball joint swings {words.angle(swing)} over that travel, more than the "
+                      f"{words.angle(most)} that such a joint has. A longer arm swings less.")
     center = solution.ride_roll_center
     if center is not None:
         judge(

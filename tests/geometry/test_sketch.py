@@ -10,6 +10,7 @@ import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
 
+from geometry.joints import joint_swings
 from geometry.layout import LayoutError, Tire
 from geometry.sketch import Brief, sketch
 from geometry.solution import solve
@@ -129,3 +130,21 @@ def test_any_sensible_brief_is_met_or_said_to_be_missed(center, gain, frame, inc
         return
     assert solve(made.layout).assembles
     assert not any("nan" in words for words in (*made.met, *made.missed, *made.facts))
+
+
+def test_a_ball_joint_that_can_not_follow_is_no_choice():
+    """Left to itself the search keeps the joints' limit; a place that is asked for is judged."""
+    brief = replace(BRIEF, roll_center=38.1, camber_gain=math.radians(1.0) / 25.4)
+    limit = math.radians(25.0)
+
+    def swing(made) -> float:
+        state = solve(made.layout, span=brief.span).left
+        return max(float(j.swing.max()) for j in joint_swings(state.corner, state.sweep)[:2])
+
+    made = sketch(brief)
+    assert swing(made) <= limit
+    assert not any("swings" in words for words in made.missed)
+    ball = made.layout.left["upper ball joint"].over
+    short = sketch(replace(brief, upper_frame_half=ball - 130.0))
+    assert swing(short) > limit
+    assert any("ball joint swings" in words for words in short.missed)
