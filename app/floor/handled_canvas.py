@@ -58,6 +58,8 @@ class HandledCanvas(Canvas):
         event.accept()
 
     def keyPressEvent(self, event: QKeyEvent) -> None:
+        # What the hand asks about has to be on the floor as it stands now.
+        self._owner.document.settle()
         if not self._owner.hand.key(event):
             event.ignore()
 
@@ -66,6 +68,7 @@ class HandledCanvas(Canvas):
             event.ignore()
 
     def contextMenuEvent(self, event: QContextMenuEvent) -> None:
+        self._owner.document.settle()
         self._owner.ask_menu(event)
         event.accept()
 

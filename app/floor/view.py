@@ -242,7 +242,9 @@ class FloorView(QWidget):
 
     @property
     def chosen(self) -> Key | None:
-        return self.document.selection
+        """The chosen nail, once the floor shows it."""
+        key = self.document.selection
+        return key if key in self.scene.places else None
 
     def nail_at(self, px: QPointF) -> Key | None:
         """The nail under a viewport position."""

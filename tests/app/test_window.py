@@ -7,8 +7,8 @@ import threading
 from collections import Counter
 
 import pytest
-from PySide6.QtCore import Qt, QThreadPool, QTimer
-from PySide6.QtGui import QGuiApplication
+from PySide6.QtCore import QPointF, Qt, QThreadPool, QTimer
+from PySide6.QtGui import QContextMenuEvent, QGuiApplication
 from PySide6.QtTest import QTest
 from PySide6.QtWidgets import (
     QAbstractButton,
@@ -22,8 +22,10 @@ from PySide6.QtWidgets import (
 )
 
 from app import settings, theme
+from app.floor.tag_list import tag_list
 from app.trouble import Trouble
 from app.window import FIRST_WORDS, NEW_WORDS
+from geometry.labels import Box
 from geometry.layout import LOWER_INNER, TIE_INNER, UPPER_INNER, Point
 from geometry.layout_file import job_to_text, read_job
 from geometry.lengths import format_length
@@ -535,3 +537,53 @@ def test_a_closed_window_leaves_no_thread_and_no_running_timer(make_window):
         timer for timer in window.findChildren(QTimer) if timer.isActive()
     ]
     assert running == []
+
+
+# --- a frame behind ----------------------------------------------------------------------
+
+
+def test_a_nail_that_is_not_drawn_yet_can_be_asked_about(make_window):
+    """An edit brings nails that the floor draws a moment later; the menu may come between."""
+    window = make_window()
+    view, document = window.floor, window.document
+    asked: list[str] = []
+
+    def look() -> None:
+        menu = QApplication.activePopupWidget()
+        asked.extend(action.text() for action in menu.actions())
+        menu.close()
+
+    document.apply_layout("another car", SAMPLES["steering-box-sedan"].planned)
+    nail = next(key for key in document.layout.nails() if key[1] == "idler arm pivot")
+    document.select(*nail)
+    view.lay_out()
+    port = view.viewport()
+    middle = port.rect().center()
+    QTimer.singleShot(100, look)
+    QApplication.sendEvent(
+        port,
+        QContextMenuEvent(QContextMenuEvent.Reason.Keyboard, middle, port.mapToGlobal(middle)),
+    )
+    assert any("ype a place" in words for words in asked), asked
+    assert view.chosen == nail
+
+
+AREA = Box(4.0, 4.0, 1000.0, 800.0)
+
+
+def test_tags_can_be_laid_out_between_an_edit_and_its_frame(make_window):
+    """A place for the tie rod that the floor still shows may be gone from the car already."""
+    window = make_window(SAMPLES["healthy-roadster"])
+    view, document = window.floor, window.document
+    document.select("left", "tie rod inner")
+    document.settle()
+    nail = QPointF(*view.canvas.to_px(*view.scene.places["left", "tie rod inner"]))
+    view.canvas.zoom(12.0, nail)
+    specs, _ = tag_list(view, AREA)
+    assert any("fit" in spec.title or "rule" in spec.title for spec in specs)
+    for name in sorted(DEGENERATE):
+        document.apply_layout("another car", DEGENERATE[name])
+        # As a change of the letters' size does, before the frame that follows the edit.
+        view.lay_out()
+        document.undo()
+        document.settle()
